@@ -1,0 +1,1 @@
+"""Gathers to images, picks and curves."""

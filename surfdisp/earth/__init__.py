@@ -1,0 +1,1 @@
+"""Layered earth to modes, sensitivities and the full wavefield."""

@@ -1,0 +1,1 @@
+"""Curves to earths."""

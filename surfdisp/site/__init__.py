@@ -1,0 +1,1 @@
+"""Earths to site quantities."""
