@@ -36,6 +36,8 @@ class Gather:
         What people call the record: its file, or the files stacked into it.
     blows : int
         How many blows are stacked.
+    spread : int
+        Which receiver layout of the survey it belongs to; gathers of one spread may miss different traces.
     notes : tuple of str
         What was found and done on the way: doubtful headers, traces set aside, each with its reason.
 
@@ -55,6 +57,7 @@ class Gather:
     source_elevation: float = tagged("m", default=0.0)
     name: str = ""
     blows: int = 1
+    spread: int = 0
     notes: tuple[str, ...] = ()
 
     def __post_init__(self) -> None:
