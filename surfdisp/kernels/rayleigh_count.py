@@ -1,0 +1,113 @@
+"""Certified count of Rayleigh branches below a frequency at fixed wavenumber.
+
+Wittrick & Williams (1971, Q. J. Mech. Appl. Math. 24, 263-284): the number of branches omega_j(k) < omega is
+the number of negative eigenvalues of the assembled dynamic stiffness, provided that no layer resonates below
+omega when both its faces are clamped. The lowest frequency of a clamped layer satisfies
+omega^2 >= vs^2 (k^2 + pi^2 / h^2), so that each layer is split into pieces thinner than
+pi / sqrt(omega^2/vs^2 - k^2) where omega/k > vs. A half-space faster than c has no resonance at all.
+
+The block-tridiagonal matrix is eliminated from the half-space upward; by Sylvester's law of inertia its
+negative eigenvalues are those of the 2x2 pivots.
+"""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+from numpy.typing import NDArray
+
+from .jit import inlined, kernel
+from .layer_stiffness import half_space_stiffness, layer_stiffness
+
+Array = NDArray[np.float64]
+
+SMALLEST = 1e-15  # a pivot's determinant relative to its squared size, below which it counts as singular
+
+
+@inlined
+def piece_count(omega: float, wavenumber: float, thickness: float, vs: float) -> int:
+    """Return into how many pieces a layer is split so that no piece can resonate when clamped."""
+    slowness = omega / vs
+    excess = slowness * slowness - wavenumber * wavenumber
+    if excess <= 0.0:
+        return 1
+    return int(thickness * math.sqrt(excess) / math.pi) + 1
+
+
+@inlined
+def nudged_determinant(xx: float, xz: float, zz: float) -> float:
+    """Return the determinant of a symmetric 2x2 pivot, moved off zero where it is singular."""
+    determinant = xx * zz - xz * xz
+    least = SMALLEST * SMALLEST * (xx * xx + zz * zz + xz * xz) + 1e-300
+    return determinant if abs(determinant) > least else least
+
+
+@inlined
+def negative_eigenvalues(xx: float, zz: float, determinant: float) -> int:
+    """Return how many eigenvalues of a symmetric 2x2 matrix are negative."""
+    if determinant < 0.0:
+        return 1
+    return 2 if xx + zz < 0.0 else 0
+
+
+@inlined
+def condensed(
+    pxx: float,
+    pxz: float,
+    pzz: float,
+    determinant: float,
+    element: tuple[float, float, float, float, float, float],
+) -> tuple[float, float, float]:
+    """Return top - cross pivot^-1 cross^T: the stiffness at the top of a layer over all that lies below."""
+    xx, xz, zz, cxx, cxz, czz = element
+    inverse = 1.0 / determinant
+    ax = (cxx * pzz - cxz * pxz) * inverse
+    az = (cxz * pxx - cxx * pxz) * inverse
+    bx = -(cxz * pzz + czz * pxz) * inverse
+    bz = (cxz * pxz + czz * pxx) * inverse
+    return xx - ax * cxx - az * cxz, xz + ax * cxz - az * czz, zz + bx * cxz - bz * czz
+
+
+@kernel
+def rayleigh_count(
+    omega: float, velocity: float, thickness: Array, vp: Array, vs: Array, density: Array
+) -> int:
+    """Return the number of Rayleigh branches omega_j(k) < omega at k = omega / velocity.
+
+    `velocity` must lie below the shear velocity of the half-space, the last layer.
+    """
+    k = omega / velocity
+    last = thickness.size - 1
+    ratio_p = velocity / vp[last]
+    ratio_s = velocity / vs[last]
+    zxx, zxz, zzz = half_space_stiffness(
+        k, density[last] * vs[last] * vs[last], ratio_p * ratio_p, ratio_s * ratio_s
+    )
+    count = 0
+    for i in range(last - 1, -1, -1):
+        pieces = piece_count(omega, k, thickness[i], vs[i])
+        ratio_p = velocity / vp[i]
+        ratio_s = velocity / vs[i]
+        element = layer_stiffness(
+            k, thickness[i] / pieces, density[i] * vs[i] * vs[i], ratio_p * ratio_p, ratio_s * ratio_s
+        )
+        for _ in range(pieces):
+            pxx = element[0] + zxx
+            pxz = zxz - element[1]
+            pzz = element[2] + zzz
+            determinant = nudged_determinant(pxx, pxz, pzz)
+            count += negative_eigenvalues(pxx, pzz, determinant)
+            zxx, zxz, zzz = condensed(pxx, pxz, pzz, determinant, element)
+    return count + negative_eigenvalues(zxx, zzz, nudged_determinant(zxx, zxz, zzz))
+
+
+@kernel
+def rayleigh_counts(
+    omega: Array, velocity: Array, thickness: Array, vp: Array, vs: Array, density: Array
+) -> NDArray[np.int64]:
+    """Return `rayleigh_count` for each pair of angular frequency and velocity."""
+    counts = np.empty(omega.size, np.int64)
+    for i in range(omega.size):
+        counts[i] = rayleigh_count(omega[i], velocity[i], thickness, vp, vs, density)
+    return counts

@@ -1,0 +1,349 @@
+"""Slowest phase velocity of a Rayleigh branch at each of many frequencies.
+
+A branch omega_j(k) reaches omega last at its largest root k; there, and nowhere at larger k, the count of
+branches below omega exceeds j. In c = omega / k that is the first velocity from below at which the count
+exceeds j. The frequencies are taken from high to low: where omega_j(k) lies above one frequency it lies above
+every lower one, so that each stretch of k is searched once.
+
+A stretch is crossed in one of two ways, and a root is accepted in both only with the count at most j just
+below it and more than j just above it (relative distance `MARGIN`).
+
+- Pursuit: the roots already found are extrapolated, and the secular function is solved from there. Used where
+  frequencies are close and the branch proves smooth, that is, where the root lies where it was expected.
+- Scan: counts at velocities so close that the vertical phase of the waves changes little from one to the
+  next;
+  between equal counts the slopes of the secular function tell whether a forward and a backward root may hide
+  there, and the dip is then searched to its bottom.
+
+So the identity of a root and its sides are certified by count; that no narrower dip of the same branch lies
+at lower velocity is a matter of following it closely.
+"""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+from numpy.typing import NDArray
+
+from .jit import inlined, kernel
+from .rayleigh_count import rayleigh_count
+from .rayleigh_secular import rayleigh_secular, secular_table
+
+Array = NDArray[np.float64]
+
+MARGIN = 1e-10  # relative distance at which a root is certified by counts on either side
+TOP = 1e-9  # relative distance below the half-space shear velocity up to which modes are sought
+PHASE_STEP = 0.8  # largest change of vertical phase from one velocity of a scan to the next [rad]
+VELOCITY_STEP = 0.08  # largest relative change of velocity in a scan
+CLOSE = 1.3  # ratio of neighbouring frequencies up to which a root may be pursued
+EXPECTED = 0.03  # relative distance from the extrapolated velocity within which a pursued root may lie
+
+
+@kernel
+def velocity_floor(vp: Array, vs: Array, density: Array) -> float:
+    """Return a velocity below which no branch exists at any frequency.
+
+    By Rayleigh's principle no branch is slower than the Rayleigh wave of a half-space that has the least
+    moduli and the greatest density anywhere; that wave is faster than 0.87 vs where lambda >= 0 and faster
+    than 0.68 vs always.
+    """
+    shear = np.min(density * vs * vs)
+    bulk = np.min(density * (vp * vp - vs * vs))  # lambda + mu, the bulk modulus of plane strain
+    return (0.87 if bulk >= 2.0 * shear else 0.68) * math.sqrt(shear / np.max(density))
+
+
+@inlined
+def vertical_phase(omega: float, velocity: float, thickness: Array, vp: Array, vs: Array) -> float:
+    """Return the summed phases of the P and S waves that propagate up and down the layers [rad]."""
+    k = omega / velocity
+    phase = 0.0
+    for i in range(thickness.size - 1):
+        excess = (omega / vs[i]) ** 2 - k * k
+        if excess > 0.0:
+            phase += thickness[i] * math.sqrt(excess)
+            excess = (omega / vp[i]) ** 2 - k * k
+            if excess > 0.0:
+                phase += thickness[i] * math.sqrt(excess)
+    return phase
+
+
+@inlined
+def next_velocity(omega: float, velocity: float, top: float, thickness: Array, vp: Array, vs: Array) -> float:
+    """Return the next velocity of a scan, at most `top`."""
+    here = vertical_phase(omega, velocity, thickness, vp, vs)
+    step = VELOCITY_STEP
+    for _ in range(40):
+        ahead = min(velocity * (1.0 + step), top)
+        change = vertical_phase(omega, ahead, thickness, vp, vs) - here
+        if change <= PHASE_STEP:
+            break
+        step *= max(0.25, min(0.8, PHASE_STEP / change))
+    return ahead
+
+
+@kernel
+def hidden_crossing(
+    omega: float, low: float, high: float, mode: int, model: tuple[Array, Array, Array, Array], table: Array
+) -> float:
+    """Return a velocity between `low` and `high` where the count exceeds `mode`, or NaN.
+
+    The counts at both ends are equal to `mode`. The secular function is followed down its slopes to where it
+    changes sign, or to its extremum.
+    """
+    tiny = 1e-6
+    for _ in range(60):
+        width = high - low
+        if width <= 1e-9 * low:
+            break
+        left = rayleigh_secular(omega, low, table)
+        right = rayleigh_secular(omega, high, table)
+        left_slope = (rayleigh_secular(omega, low + tiny * width, table) - left) / (tiny * width)
+        right_slope = (right - rayleigh_secular(omega, high - tiny * width, table)) / (tiny * width)
+        if left * left_slope >= 0.0 or right * right_slope <= 0.0:
+            break
+        # where the two tangents meet, kept inside
+        middle = (right - left + left_slope * low - right_slope * high) / (left_slope - right_slope)
+        middle = min(max(middle, low + 0.1 * width), high - 0.1 * width)
+        value = rayleigh_secular(omega, middle, table)
+        if value * left <= 0.0:
+            if rayleigh_count(omega, middle, *model) > mode:
+                return middle
+            break
+        slope = (rayleigh_secular(omega, middle + tiny * width, table) - value) / (tiny * width)
+        if slope * value < 0.0:
+            low = middle
+        else:
+            high = middle
+    return math.nan
+
+
+@kernel
+def refined(
+    omega: float, low: float, high: float, mode: int, model: tuple[Array, Array, Array, Array], table: Array
+) -> float:
+    """Return the root between `low` (count at most `mode`) and `high` (count above `mode`).
+
+    Bisection by count until one crossing is left, then regula falsi with inverse quadratic steps
+    (Chandrupatla 1997) on the secular function, then the counts on both sides.
+    """
+    low_count = rayleigh_count(omega, low, *model)
+    high_count = rayleigh_count(omega, high, *model)
+    while (low_count != mode or high_count != mode + 1) and high - low > 2e-15 * high:
+        middle = 0.5 * (low + high)
+        count = rayleigh_count(omega, middle, *model)
+        if count > mode:
+            high, high_count = middle, count
+        else:
+            low, low_count = middle, count
+    for attempt in range(8):
+        root = bracketed(omega, low, high, table)
+        margin = MARGIN * 4.0**attempt * root
+        below = max(root - margin, low)
+        above = min(root + margin, high)
+        if rayleigh_count(omega, below, *model) > mode:
+            high = below
+        elif rayleigh_count(omega, above, *model) <= mode:
+            low = above
+        else:
+            return root
+        if high - low <= 2.0 * margin:
+            break
+    while high - low > 4e-16 * high:  # the secular function is too noisy here: the count decides
+        middle = 0.5 * (low + high)
+        if middle <= low or middle >= high:
+            break
+        if rayleigh_count(omega, middle, *model) > mode:
+            high = middle
+        else:
+            low = middle
+    return 0.5 * (low + high)
+
+
+@kernel
+def bracketed(omega: float, low: float, high: float, table: Array) -> float:
+    """Return a zero of the secular function between two velocities of opposite sign (Chandrupatla 1997)."""
+    a, fa = high, rayleigh_secular(omega, high, table)
+    b, fb = low, rayleigh_secular(omega, low, table)
+    if fa * fb > 0.0:
+        return 0.5 * (low + high)
+    t = 0.5
+    for _ in range(100):
+        x = a + t * (b - a)
+        fx = rayleigh_secular(omega, x, table)
+        if (fx > 0.0) == (fa > 0.0):
+            c, fc = a, fa
+        else:
+            c, fc = b, fb
+            b, fb = a, fa
+        a, fa = x, fx
+        best = a if abs(fa) < abs(fb) else b
+        tolerance = 2e-14 * abs(best) / abs(b - a)
+        if tolerance > 0.5 or fa == 0.0:
+            return best
+        xi = (a - b) / (c - b)
+        phi = (fa - fb) / (fc - fb)
+        if phi * phi < xi and (1.0 - phi) * (1.0 - phi) < 1.0 - xi:
+            t = fa / (fb - fa) * fc / (fb - fc) + (c - a) / (b - a) * fa / (fc - fa) * fb / (fc - fb)
+        else:
+            t = 0.5
+        t = min(max(t, tolerance), 1.0 - tolerance)
+    return best
+
+
+@kernel
+def scanned(
+    omega: float, floor: float, top: float, mode: int, model: tuple[Array, Array, Array, Array], table: Array
+) -> float:
+    """Return the slowest root of branch `mode` between two velocities, NaN where there is none."""
+    thickness, vp, vs, _ = model
+    low = floor
+    low_count = rayleigh_count(omega, low, *model)
+    if low_count > mode:
+        return math.nan
+    while low < top:
+        high = next_velocity(omega, low, top, thickness, vp, vs)
+        high_count = rayleigh_count(omega, high, *model)
+        if high_count > mode:
+            return refined(omega, low, high, mode, model, table)
+        if high_count == mode:
+            start = low
+            while low_count != mode and high - start > 0.1 * (high - low):  # where the count reached `mode`
+                middle = 0.5 * (start + high)
+                count = rayleigh_count(omega, middle, *model)
+                if count > mode:
+                    return refined(omega, start, middle, mode, model, table)
+                start, low_count = middle, count
+            if low_count == mode:
+                crossing = hidden_crossing(omega, start, high, mode, model, table)
+                if crossing == crossing:
+                    return refined(omega, start, crossing, mode, model, table)
+        low, low_count = high, high_count
+    return math.nan
+
+
+@kernel
+def pursued(
+    omega: float, guess: float, spread: float, mode: int, low: float, high: float, table: Array
+) -> tuple[float, float]:
+    """Return a zero of the secular function near `guess`, and a velocity just above it whose sign is
+    opposite.
+
+    Secant, then inverse quadratic steps. Both are NaN where the steps leave (low, high) or do not settle; the
+    second alone is NaN where no step went beyond the root.
+    """
+    sign = 1.0 if mode % 2 == 0 else -1.0  # of the secular function below the root
+    above = math.nan
+    a = guess
+    if not low < a < high:
+        return math.nan, math.nan
+    fa = sign * rayleigh_secular(omega, a, table)
+    if fa < 0.0:
+        above = a
+    b = a * (1.0 + spread) if fa > 0.0 else a * (1.0 - spread)
+    c = fc = 0.0
+    for step in range(9):
+        if not low < b < high:
+            return math.nan, math.nan
+        fb = sign * rayleigh_secular(omega, b, table)
+        if fb < 0.0 and not above < b:
+            above = b
+        if fb == fa:
+            return math.nan, math.nan
+        secant = b - fb * (b - a) / (fb - fa)
+        x = secant
+        if step > 0:
+            if fc in (fa, fb):
+                return math.nan, math.nan
+            x = (
+                a * fb * fc / ((fa - fb) * (fa - fc))
+                + b * fa * fc / ((fb - fa) * (fb - fc))
+                + c * fa * fb / ((fc - fa) * (fc - fb))
+            )
+            correction = abs(x - secant)
+            # the error of the secant step is K (x-a)(x-b), that of the quadratic one K^2 (x-a)(x-b)(x-c)
+            curvature = correction / abs((x - a) * (x - b))
+            if correction * curvature * abs(x - c) <= 2e-12 * x:
+                return x, above
+        c, fc = a, fa
+        a, fa = b, fb
+        b = x
+    return math.nan, math.nan
+
+
+@inlined
+def extrapolated(x: float, xs: Array, ys: Array, n: int) -> tuple[float, float]:
+    """Return the polynomial through `n` points at `x` (Neville), and its change by the oldest of them."""
+    work = np.empty(4)
+    for i in range(n):
+        work[i] = ys[i]
+    change = 0.0
+    for m in range(1, n):
+        for i in range(n - m):
+            work[i] = ((x - xs[i + m]) * work[i] + (xs[i] - x) * work[i + 1]) / (xs[i] - xs[i + m])
+        change = work[0]
+    previous = ys[0]
+    if n > 2:  # the polynomial through all but the oldest
+        for i in range(n - 1):
+            work[i] = ys[i]
+        for m in range(1, n - 1):
+            for i in range(n - 1 - m):
+                work[i] = ((x - xs[i + m]) * work[i] + (xs[i] - x) * work[i + 1]) / (xs[i] - xs[i + m])
+        previous = work[0]
+    return change, abs(change - previous)
+
+
+@kernel
+def slowest_velocities(
+    omega: Array, mode: int, thickness: Array, vp: Array, vs: Array, density: Array
+) -> Array:
+    """Return the slowest phase velocity of branch `mode` at each angular frequency, NaN where it has none.
+
+    Parameters
+    ----------
+    omega : array (n,)
+        Angular frequencies in descending order [rad/s].
+    mode : int
+        Number of the branch, from 0.
+    """
+    model = (thickness, vp, vs, density)
+    table = secular_table(thickness, vp, vs, density)
+    top = vs[-1] * (1.0 - TOP)
+    velocities = np.full(omega.size, math.nan)
+    slowest = velocity_floor(vp, vs, density)
+    cleared = math.inf  # wavenumber above which the branch is known to lie above the frequency at hand
+    logs = np.zeros(4)  # the latest roots, newest first
+    roots = np.zeros(4)
+    known = 0
+    for i in range(omega.size):
+        w = omega[i]
+        low = max(slowest, w / cleared)
+        log_w = math.log(w)
+        velocity = math.nan
+        if known > 0 and logs[0] == log_w:
+            velocities[i] = velocities[i - 1]
+            continue
+        if known > 1 and logs[0] - log_w < math.log(CLOSE):
+            guess, spread = extrapolated(log_w, logs, roots, known)
+            spread = min(max(1.5 * spread / guess, 1e-7), 0.02)
+            root, above = pursued(w, guess, spread, mode, low, top, table)
+            if abs(root - guess) < EXPECTED * guess and root * (1.0 - MARGIN) > low:
+                below = root * (1.0 - MARGIN)
+                if rayleigh_count(w, below, *model) == mode and (
+                    (mode == 0 and above > root)
+                    or rayleigh_count(w, root * (1.0 + MARGIN), *model) == mode + 1
+                ):
+                    velocity = root
+        if velocity != velocity and low < top:
+            velocity = scanned(w, low, top, mode, model, table)
+        velocities[i] = velocity
+        if velocity == velocity:
+            cleared = w / velocity
+            known = min(known + 1, 4)
+            for q in range(known - 1, 0, -1):
+                logs[q], roots[q] = logs[q - 1], roots[q - 1]
+            logs[0], roots[0] = log_w, velocity
+        else:
+            cleared = min(cleared, w / top)
+            known = 0
+    return velocities

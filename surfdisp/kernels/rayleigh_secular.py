@@ -1,0 +1,100 @@
+"""Rayleigh secular function by the fast delta matrix: cheap, smooth in c, zero at every mode.
+
+Buchen & Ben-Hador (1996, Geophys. J. Int. 124, 869-887): the 2x2 minors of the two solutions that leave the
+free surface without traction form a vector of five independent components. It is carried down through each
+layer by the hyperbolic functions of its vertical phases and across each interface by the contrasts ::
+
+    eps = rho_below / rho_above,   eta = 2 (g_above - eps g_below),   g = (vs / c)^2
+
+and joined to the two decaying waves of the half-space. All steps are scaled by positive factors only (the
+decaying exponentials, and now and then the size of the vector), so that the sign is that of the exact
+function.
+"""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+from numpy.typing import NDArray
+
+from .jit import kernel
+from .layer_stiffness import even_functions
+
+Array = NDArray[np.float64]
+
+THICKNESS, P_SLOWNESS, S_SLOWNESS, CONTRAST, STEP = range(5)  # columns of the table
+
+
+@kernel
+def secular_table(thickness: Array, vp: Array, vs: Array, density: Array) -> Array:
+    """Return what does not depend on frequency or velocity, one row per layer.
+
+    Columns: thickness, 1/vp^2, 1/vs^2, eps, and 2 (vs^2 - eps vs_below^2).
+    """
+    n = thickness.size
+    table = np.zeros((n, 5))
+    for i in range(n):
+        table[i, THICKNESS] = thickness[i]
+        table[i, P_SLOWNESS] = 1.0 / (vp[i] * vp[i])
+        table[i, S_SLOWNESS] = 1.0 / (vs[i] * vs[i])
+        if i < n - 1:
+            eps = density[i + 1] / density[i]
+            table[i, CONTRAST] = eps
+            table[i, STEP] = 2.0 * (vs[i] * vs[i] - eps * vs[i + 1] * vs[i + 1])
+    return table
+
+
+@kernel
+def rayleigh_secular(omega: float, velocity: float, table: Array) -> float:
+    """Return the secular function, positive where the number of branches below omega is even."""
+    k = omega / velocity
+    cc = velocity * velocity
+    inverse = 1.0 / cc
+    last = table.shape[0] - 1
+    t = 2.0 - cc * table[0, S_SLOWNESS]
+    x1, x2, x3, x4, x5 = 2.0 * t, -t * t, 0.0, 0.0, -4.0
+    for i in range(last):
+        X = k * table[i, THICKNESS]
+        rr = 1.0 - cc * table[i, P_SLOWNESS]
+        ss = 1.0 - cc * table[i, S_SLOWNESS]
+        ca, sa, ea = even_functions(rr * X * X)
+        cb, sb, eb = even_functions(ss * X * X)
+        sa *= X
+        sb *= X
+        # the layer: first the S wave, then the P wave
+        p1 = cb * x2 + ss * sb * x3
+        p2 = cb * x4 + ss * sb * x5
+        p3 = sb * x2 + cb * x3
+        p4 = sb * x4 + cb * x5
+        q1 = ca * p1 - rr * sa * p2
+        q2 = ca * p4 - sa * p3
+        q3 = ca * p3 - rr * sa * p4
+        q4 = ca * p2 - sa * p1
+        x1 *= ea * eb
+        # the interface below
+        eps = table[i, CONTRAST]
+        eta = table[i, STEP] * inverse
+        a = eps + eta
+        a_1 = a - 1.0
+        b = 1.0 - eta
+        y1 = a_1 * x1 + a * q1
+        y2 = a * x1 + a_1 * q2
+        z1 = b * x1 - eta * q1
+        z2 = b * q2 - eta * x1
+        x1 = b * y2 - eta * y1
+        x2 = a * y1 + a_1 * y2
+        x3 = eps * q3
+        x4 = eps * q4
+        x5 = b * z2 - eta * z1
+        if i & 7 == 7:
+            size = 1.0 / (abs(x1) + abs(x2) + abs(x3) + abs(x4) + abs(x5))
+            x1 *= size
+            x2 *= size
+            x3 *= size
+            x4 *= size
+            x5 *= size
+    r = math.sqrt(1.0 - cc * table[last, P_SLOWNESS])
+    s = math.sqrt(1.0 - cc * table[last, S_SLOWNESS])
+    value: float = x2 + s * x3 - r * (x4 + s * x5)
+    return value
