@@ -1,4 +1,4 @@
-"""Kernels of the phase-shift image: Fourier sums at any frequency, and steered sums over the receivers.
+"""Kernels of the phase-shift image: steered sums over the receivers.
 
 Park, Miller & Xia (1998), E(f, c) = |sum_j U_j(f)/|U_j(f)| exp(i omega x_j / c)|, here divided by the number
 of traces and squared, so that a plane wave reaches 1 at its velocity.
@@ -17,31 +17,6 @@ Floats = NDArray[np.float64]
 
 OVERSAMPLING = 8
 """Grid points per 2 pi / aperture: six-point interpolation is then good to 2e-5 of the largest sum."""
-
-
-@summing
-def fourier_sums(samples: Floats, times: Floats, frequencies: Floats) -> tuple[Floats, Floats]:
-    """Return sum_n samples[n, j] exp(-i omega t_n), real and imaginary part, each (n_frequencies, n_traces).
-
-    `samples` is (n_samples, n_traces) and `times` (n_samples,) even [s]; the phase advances by one complex
-    product per sample, restarted every 256 samples.
-    """
-    n_samples, n_traces = samples.shape
-    real = np.zeros((len(frequencies), n_traces))
-    imag = np.zeros((len(frequencies), n_traces))
-    step = times[1] - times[0] if n_samples > 1 else 0.0
-    for i in range(len(frequencies)):
-        omega = 2.0 * np.pi * frequencies[i]
-        turn_re, turn_im = np.cos(omega * step), -np.sin(omega * step)
-        re, im = 1.0, 0.0
-        for n in range(n_samples):
-            if n % 256 == 0:
-                re, im = np.cos(omega * times[n]), -np.sin(omega * times[n])
-            for j in range(n_traces):
-                real[i, j] += samples[n, j] * re
-                imag[i, j] += samples[n, j] * im
-            re, im = re * turn_re - im * turn_im, re * turn_im + im * turn_re
-    return real, imag
 
 
 @kernel

@@ -11,12 +11,28 @@ from pathlib import Path
 import numpy as np
 from bar import SHARED, Bar
 
-from surfdisp.dispersion import TRANSFORMS
+from surfdisp.core import DispersionCurve, Picks
+from surfdisp.dispersion import TRANSFORMS, CurveFromGathers, curve_from_gathers
+from surfdisp.dispersion.picking import NEAR_FIELD
+from surfdisp.records import condition, prepare_records
+
+TABLE_4M = {
+    "2001": (209, 198, 193, 188, 184, 175, 172, 170, 170),
+    "2002": (212, 202, 194, 186, 181, 176, 171, 170, 170),
+    "2004": (212, 200, 192, 187, 178, 176, 171, 170, 169),
+    "2005": (212, 202, 194, 186, 182, 176, 170, 170, 170),
+}
+FREQUENCIES_4M = (14.0, 16.0, 18.0, 20.0, 22.0, 25.0, 30.0, 35.0, 45.0)
+TABLE_1M = {16.0: 176.0, 20.0: 150.0, 30.0: 133.0, 40.0: 129.0, 50.0: 129.0}
 
 
 def measure() -> Iterator[Bar]:
     """Measure the bars of this room."""
     yield image_speed()
+    yield from long_spread("off-end shots", "2001", "2002", "2004", "2005")
+    yield from long_spread("all five files", "2001", "2002", "2003", "2004", "2005")
+    yield from short_spread()
+    yield no_ridge()
 
 
 def image_speed(repeats: int = 9) -> Bar:
@@ -47,3 +63,79 @@ def image_speed(repeats: int = 9) -> Bar:
         bound="at most 2 x, goal 1 x",
         met=ratio <= 2.0,
     )
+
+
+def from_files(folder: str, *names: str) -> CurveFromGathers:
+    """Take field files to the curve with the defaults."""
+    _, gathers = prepare_records([SHARED / "data" / folder / f"{name}.dat" for name in names])
+    return curve_from_gathers([condition(gather, slowest_velocity=50.0) for gather in gathers])
+
+
+def at(curve: DispersionCurve, frequencies: np.ndarray) -> np.ndarray:
+    """Velocity of the curve, NaN outside of its band."""
+    return np.interp(np.log(frequencies), np.log(curve.frequency), curve.velocity, left=np.nan, right=np.nan)
+
+
+def long_spread(label: str, *names: str) -> Iterator[Bar]:
+    """Measure the bars of spread_4m."""
+    result = from_files("spread_4m", *names)
+    curve = result.curve
+    assert curve is not None
+    table = np.mean(list(TABLE_4M.values()), axis=0)
+    difference = np.abs(at(curve, np.array(FREQUENCIES_4M)) / table - 1.0)
+    worst = float(np.max(np.where(np.isnan(difference), np.inf, difference)))
+    name = f"spread_4m ({label})"
+    yield Bar(f"{name}, 14 to 45 Hz against the table", f"{100 * worst:.1f} %", "3 %", worst <= 0.03)
+    ridge = [p.velocity[p.accepted & (p.frequency > 25.0)] for p in result.picks]
+    fastest = max(float(v.max()) for v in ridge if v.size)
+    slowest = min(float(v.min()) for v in ridge if v.size)
+    clean = slowest > 150.0 and fastest < 200.0
+    yield Bar(
+        f"{name}, no alias picked", f"{slowest:.0f} to {fastest:.0f} m/s above 25 Hz", "150 to 200 m/s", clean
+    )
+    lowest = float(curve.frequency[0])
+    yield Bar(f"{name}, lowest frequency claimed", f"{lowest:.1f} Hz", "not below 9 Hz", lowest >= 9.0)
+    share = np.mean(np.concatenate([within(curve, p) for p in result.picks]))
+    yield Bar(
+        f"{name}, picks of single shots within the curve's 90 % range",
+        f"{100 * share:.0f} %",
+        "at least 90 %",
+        share >= 0.9,
+    )
+    told = [note for note in curve.notes if "ground changes along the line" in note]
+    yield Bar(f"{name}, lateral change reported", "; ".join(told) or "nothing", "reported", bool(told))
+
+
+def within(curve: DispersionCurve, picks: Picks) -> np.ndarray:
+    """Tell which accepted picks lie within 1.645 standard deviations of curve and pick together."""
+    inside = (picks.frequency >= curve.frequency[0]) & (picks.frequency <= curve.frequency[-1])
+    used = picks.accepted & inside
+    f = picks.frequency[used]
+    c, s = (np.interp(f, curve.frequency, y) for y in (curve.velocity, curve.sigma))
+    return np.abs(picks.velocity[used] - c) <= 1.645 * np.hypot(s, picks.sigma[used])
+
+
+def short_spread() -> Iterator[Bar]:
+    """Measure the bars of spread_1m."""
+    result = from_files("spread_1m", "206")
+    assert result.curve is not None
+    table = np.array(list(TABLE_1M.values()))
+    difference = np.abs(at(result.curve, np.array(list(TABLE_1M))) / table - 1.0)
+    worst = float(np.max(np.where(np.isnan(difference), np.inf, difference)))
+    yield Bar("spread_1m, 16 to 50 Hz against the README", f"{100 * worst:.1f} %", "3 %", worst <= 0.03)
+    (picks,) = result.picks
+    band = (picks.frequency >= 12.0) & (picks.frequency <= 14.0)
+    flagged = [NEAR_FIELD in reason for reason in picks.reason[band]]
+    yield Bar(
+        "spread_1m, 12 to 14 Hz flagged near field",
+        f"{sum(flagged)} of {len(flagged)} frequencies",
+        "all",
+        all(flagged),
+    )
+
+
+def no_ridge() -> Bar:
+    """Count what is picked where nothing can be."""
+    result = from_files("no_ridge", "102")
+    count = sum(int(p.accepted.sum()) for p in result.picks)
+    return Bar("no_ridge, accepted picks", f"{count}", "0", count == 0 and result.curve is None)

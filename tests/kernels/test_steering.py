@@ -41,14 +41,6 @@ def test_grid_error_is_bounded_where_it_is_largest_at_the_ends_of_the_spread():
     np.testing.assert_allclose(np.sqrt(got), np.sqrt(plain_power(unit, offsets)), atol=1e-4)
 
 
-def test_fourier_sums_are_the_plain_sums_at_uneven_frequencies():
-    samples = np.random.default_rng(4).standard_normal((1500, 5))
-    times = -0.02 + 0.0005 * np.arange(1500)
-    real, imag = steering.fourier_sums(samples, times, FREQUENCIES)
-    plain = np.exp(-2j * np.pi * np.outer(FREQUENCIES, times)) @ samples
-    np.testing.assert_allclose(real + 1j * imag, plain, atol=1e-11 * np.abs(plain).max())
-
-
 def test_unit_phasors_keep_the_phase_and_leave_dead_traces_out():
     real, imag = np.array([[3.0, 0.0, -1e-200]]), np.array([[4.0, 0.0, 0.0]])
     live = steering.unit_phasors(real, imag)

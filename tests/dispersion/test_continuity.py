@@ -1,0 +1,53 @@
+"""Runs of picks that are one smooth branch."""
+
+import numpy as np
+import pytest
+
+from surfdisp.dispersion.continuity import smooth_runs
+
+F = np.arange(10.0, 60.0, 0.25)
+LOBE = 1.0 / 48.0
+
+
+def lengths(frequency, velocity):
+    return [len(run) for run in smooth_runs(frequency, velocity, LOBE)]
+
+
+@pytest.mark.parametrize(
+    "branch",
+    [
+        lambda f: np.full(len(f), 200.0),
+        lambda f: 140.0 + 200.0 / (1.0 + np.square(f / 15.0)),
+        lambda f: 130.0 + 0.2 * f,  # inverse dispersion
+    ],
+    ids=["constant", "normal", "inverse"],
+)
+def test_a_smooth_branch_is_one_run_with_noise_too(branch):
+    noise = 1.0 + 0.005 * np.random.default_rng(1).standard_normal(len(F))
+    assert lengths(F, branch(F) * noise) == [len(F)]
+
+
+def test_a_jump_to_a_faster_mode_cuts():
+    velocity = np.where(F < 20.0, 330.0, 180.0)
+    runs = smooth_runs(F, velocity, LOBE)
+    assert len(runs) >= 2
+    for run in runs:  # the cut lies within one cell, a twelfth of an octave, of the jump
+        clear = run[np.abs(np.log2(F[run] / 20.0)) > 1.0 / 12.0]
+        assert clear.size == 0 or np.ptp(velocity[clear]) == 0.0
+
+
+def test_a_narrow_gap_is_bridged_and_a_wide_one_cuts():
+    velocity = np.full(len(F), 180.0)
+    narrow, wide = (F < 30.0) | (F > 33.0), (F < 30.0) | (F > 40.0)
+    assert lengths(F[narrow], velocity[narrow]) == [narrow.sum()]
+    assert lengths(F[wide], velocity[wide]) == [(F < 30.0).sum(), (F > 40.0).sum()]
+
+
+def test_a_step_across_a_narrow_gap_cuts():
+    keep = (F < 18.0) | (F > 20.0)
+    velocity = np.where(F < 19.0, 400.0, 200.0)[keep]
+    assert lengths(F[keep], velocity)[0] == (F < 18.0).sum()
+
+
+def test_nothing_gives_no_run():
+    assert smooth_runs(np.array([]), np.array([]), LOBE) == []
