@@ -13,6 +13,11 @@ from ..core.gather import Gather
 
 FloatArray = NDArray[np.float64]
 
+Limits = tuple[float | None, float | None]
+
+EDGE_OCTAVES = 0.5
+"""Width of a filter's edges [octaves]."""
+
 PULSE = 0.15
 """Time kept after the arrival of the slowest wave, for the length of the pulse itself [s]."""
 
@@ -22,8 +27,8 @@ def condition(
     *,
     detrend: bool = True,
     taper: float = 0.05,
-    band: tuple[float, float] | None = None,
-    window: tuple[float, float] | None = None,
+    band: Limits = (None, None),
+    window: Limits = (None, None),
     window_edge: float = 0.05,
     slowest_velocity: float | None = None,
 ) -> Gather:
@@ -37,17 +42,17 @@ def condition(
     taper : float
         Share of the record's length over which its end is brought to zero by a cosine, 0 to 0.5. The
         beginning is tapered over the time before the blow only: arrivals near the source are kept.
-    band : (float, float), optional
-        Lowest and highest frequency [Hz] of a zero-phase band-pass with cosine edges half an octave wide,
-        outside the band.
-    window : (float, float), optional
+    band : (float or None, float or None)
+        Lowest and highest frequency [Hz] of a zero-phase filter with cosine edges half an octave wide,
+        outside the band; None leaves that side open.
+    window : (float or None, float or None)
         Slowest and fastest velocity [m/s] of the surface waves: each trace is kept from offset / fastest to
-        offset / slowest, plus 0.15 s for the pulse.
+        offset / slowest, plus 0.15 s for the pulse; None leaves that side open.
     window_edge : float
         Width of the window's cosine edges, outside the window [s].
     slowest_velocity : float, optional
         Slowest wave of interest [m/s]: the record is cut where it has passed the farthest receiver, plus
-        0.15 s, and never shorter.
+        0.15 s and the taper.
 
     Raises
     ------
@@ -57,27 +62,26 @@ def condition(
     if not 0.0 <= taper <= 0.5:
         raise InputError(f"taper must lie between 0 and 0.5; got {taper}")
     if slowest_velocity is not None:
-        gather = _trimmed(gather, positive(slowest_velocity, "slowest_velocity"))
+        gather = _trimmed(gather, positive(slowest_velocity, "slowest_velocity"), taper)
     data = np.array(gather.data)
     if detrend:
         data = _detrended(data)
-    if band is not None:
-        data = _band_passed(data, gather.interval, *_ordered(band, "band"))
-    if window is not None:
-        data *= _window(gather, *_ordered(window, "window"), positive(window_edge, "window_edge"))
+    data = _filtered(data, gather.interval, *_ordered(band, "band"))
+    data = _windowed(data, gather, *_ordered(window, "window"), positive(window_edge, "window_edge"))
     return dataclasses.replace(gather, data=data * _taper(gather.times, taper))
 
 
-def _ordered(limits: tuple[float, float], name: str) -> tuple[float, float]:
-    low, high = positive(limits[0], f"lower {name} limit"), positive(limits[1], f"upper {name} limit")
-    if not low < high:
+def _ordered(limits: Limits, name: str) -> Limits:
+    low, high = (None if limit is None else positive(limit, f"{name} limit") for limit in limits)
+    if low is not None and high is not None and not low < high:
         raise InputError(f"{name} limits must increase; got {low:g} and {high:g}")
     return low, high
 
 
-def _trimmed(gather: Gather, slowest_velocity: float) -> Gather:
+def _trimmed(gather: Gather, slowest_velocity: float, taper: float) -> Gather:
     last = float(gather.offsets.max()) / slowest_velocity + PULSE
-    count = int(np.clip(np.ceil((last - gather.delay) / gather.interval) + 1, 2, gather.data.shape[1]))
+    length = (last - gather.delay) / (1.0 - taper)  # the taper at the end comes after the wave
+    count = int(np.clip(np.ceil(length / gather.interval) + 1, 2, gather.data.shape[1]))
     return dataclasses.replace(gather, data=gather.data[:, :count])
 
 
@@ -88,29 +92,39 @@ def _detrended(data: FloatArray) -> FloatArray:
     return np.asarray(centred - np.outer(centred @ ramp / power, ramp)) if power > 0.0 else centred
 
 
-def _band_passed(data: FloatArray, interval: float, low: float, high: float) -> FloatArray:
+def _filtered(data: FloatArray, interval: float, low: float | None, high: float | None) -> FloatArray:
+    if low is None and high is None:
+        return data
     length = 2 * data.shape[1]  # zeros behind, against wrapping round
-    octaves = np.log2(np.maximum(np.fft.rfftfreq(length, interval), 1e-12))
-    gain = _cosine_step((octaves - np.log2(low)) / 0.5 + 1.0) * _cosine_step(
-        (np.log2(high) - octaves) / 0.5 + 1.0
-    )
-    return np.fft.irfft(np.fft.rfft(data, length, axis=1) * gain, length, axis=1)[:, : data.shape[1]]
+    octave = np.log2(np.maximum(np.fft.rfftfreq(length, interval), np.finfo(np.float64).tiny))
+    spectra = np.fft.rfft(data, length, axis=1)
+    if low is not None:
+        spectra *= _rise((octave - np.log2(low)) / EDGE_OCTAVES)
+    if high is not None:
+        spectra *= _rise((np.log2(high) - octave) / EDGE_OCTAVES)
+    return np.fft.irfft(spectra, length, axis=1)[:, : data.shape[1]]
 
 
-def _window(gather: Gather, slowest: float, fastest: float, edge: float) -> FloatArray:
-    begin = (gather.offsets / fastest)[:, None]
-    end = (gather.offsets / slowest)[:, None] + PULSE
-    times = gather.times[None, :]
-    return _cosine_step((times - begin) / edge + 1.0) * _cosine_step((end - times) / edge + 1.0)
+def _windowed(
+    data: FloatArray, gather: Gather, slowest: float | None, fastest: float | None, edge: float
+) -> FloatArray:
+    offsets, times = gather.offsets[:, None], gather.times[None, :]
+    if fastest is not None:
+        data = data * _rise((times - offsets / fastest) / edge)
+    if slowest is not None:
+        data = data * _rise((offsets / slowest + PULSE - times) / edge)
+    return data
 
 
 def _taper(times: FloatArray, share: float) -> FloatArray:
-    length = max(share * (times[-1] - times[0]), np.finfo(np.float64).tiny)
-    ending = _cosine_step((times[-1] - times) / length) if share > 0.0 else np.ones_like(times)
+    length = share * (times[-1] - times[0])
+    if not length > 0.0:
+        return np.ones_like(times)
+    ending = _rise((times[-1] - times) / length - 1.0)
     before = min(length, -times[0])
-    return ending * _cosine_step((times - times[0]) / before) if before > 0.0 and share > 0.0 else ending
+    return ending * _rise((times - times[0]) / before - 1.0) if before > 0.0 else ending
 
 
-def _cosine_step(x: FloatArray) -> FloatArray:
-    """Rise from 0 at x = 0 to 1 at x = 1."""
-    return np.asarray(0.5 - 0.5 * np.cos(np.pi * np.clip(x, 0.0, 1.0)))
+def _rise(x: FloatArray) -> FloatArray:
+    """Cosine from 0 at x = -1 to 1 at x = 0, where the kept part begins."""
+    return np.asarray(0.5 + 0.5 * np.cos(np.pi * np.clip(x, -1.0, 0.0)))

@@ -34,13 +34,13 @@ class FieldFile:
     said: tuple[str, ...]
 
 
-def read_bytes(path: str | Path) -> bytes:
-    """Return the bytes of a file.
+def existing_file(path: str | Path) -> Path:
+    """Return the path of a file that exists.
 
     Raises
     ------
     InputError
-        If there is no such file, it is a folder, or it may not be read.
+        If there is no such file, or it is a folder.
     """
     file = Path(path)
     if file.is_dir():
@@ -49,6 +49,18 @@ def read_bytes(path: str | Path) -> bytes:
         )
     if not file.exists():
         raise InputError(f"{file}: no such file")
+    return file
+
+
+def read_bytes(path: str | Path) -> bytes:
+    """Return the bytes of a file.
+
+    Raises
+    ------
+    InputError
+        If there is no such file, it is a folder, or it may not be read.
+    """
+    file = existing_file(path)
     try:
         return file.read_bytes()
     except OSError as error:

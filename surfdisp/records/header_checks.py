@@ -109,7 +109,7 @@ def _check_source(gather: Gather, labels: tuple[str, ...]) -> tuple[list[str], b
     if best - here > 0.15 and best >= CONVINCING:
         doubts.append(f"arrivals suggest a source {place} rather than at {gather.source:g} m{named}")
     elif named:
-        doubts.append(f"source position {gather.source:g} m{named}; check that it is in metres")
+        doubts.append(f"source position {gather.source:g} m equals the shot number; is it in metres?")
     return doubts, False
 
 
@@ -150,8 +150,14 @@ def _is_label(source: float, labels: tuple[str, ...]) -> bool:
 
 
 def _rank_correlation(a: FloatArray, b: FloatArray) -> float:
-    """Spearman's rank correlation, ties in order of appearance."""
-    ranks = [
-        np.argsort(np.argsort(values, kind="stable"), kind="stable").astype(np.float64) for values in (a, b)
-    ]
-    return float(np.corrcoef(ranks[0], ranks[1])[0, 1])
+    """Spearman's rank correlation, equal values sharing their mean rank; 0 where all are equal."""
+    ranks = np.stack([_ranks(a), _ranks(b)])
+    ranks -= ranks.mean(axis=1, keepdims=True)
+    scale = float(np.sqrt(np.prod(np.sum(np.square(ranks), axis=1))))
+    return float(ranks[0] @ ranks[1]) / scale if scale > 0.0 else 0.0
+
+
+def _ranks(values: FloatArray) -> FloatArray:
+    ordered = np.sort(values)
+    below, upto = (np.searchsorted(ordered, values, side) for side in ("left", "right"))
+    return 0.5 * (below + upto).astype(np.float64)

@@ -59,9 +59,17 @@ def locate(raw: RawRecord, geometry: Geometry | None) -> LocatedShot:
     Raises
     ------
     InputError
-        If receivers or source have no position, in the table or the header, or no two receivers differ.
+        If receivers or source have no position, in the table or the header, no two receivers differ, or a
+        number in the header is none. The message begins with the file's name.
     """
-    table = geometry or Geometry()
+    try:
+        return _located(raw, geometry or Geometry())
+    except InputError as error:
+        told = str(error)
+        raise InputError(told if told.startswith(raw.file) else f"{raw.file}: {told}") from error
+
+
+def _located(raw: RawRecord, table: Geometry) -> LocatedShot:
     shot = table.shots.get(raw.file, ShotGeometry())
     flags = list(raw.flags)
     refused = dict(raw.refused)
@@ -75,7 +83,7 @@ def locate(raw: RawRecord, geometry: Geometry | None) -> LocatedShot:
         source[0] = shot.source
         flags.append(f"source position from {table.origin}")
     if not np.isfinite(source[0]):
-        raise InputError(f"{raw.file}: no source position in the header; {ADVICE}")
+        raise InputError(f"no source position in the header; {ADVICE}")
     line = project(places[places_known, :2], source[:2])
     positions = np.full(len(places), np.nan)
     positions[places_known] = line.receivers
@@ -121,11 +129,9 @@ def _receiver_places(raw: RawRecord, table: Geometry) -> FloatArray:
 
 def _demand_receivers(raw: RawRecord, known: FloatArray) -> None:
     if len(known) == 0:
-        raise InputError(f"{raw.file}: no receiver positions in the header; {ADVICE}")
+        raise InputError(f"no receiver positions in the header; {ADVICE}")
     if len(raw.data) > 1 and len(np.unique(np.nan_to_num(known), axis=0)) < 2:
-        raise InputError(
-            f"{raw.file}: all {len(known)} receivers are at {known[0, 0]:g} m in the header; {ADVICE}"
-        )
+        raise InputError(f"all {len(known)} receivers are at {known[0, 0]:g} m in the header; {ADVICE}")
 
 
 def _in_order(positions: FloatArray, refused: dict[int, str]) -> NDArray[np.int64]:

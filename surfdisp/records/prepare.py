@@ -13,16 +13,17 @@ from ..core.gather import Gather
 from ..core.progress import SILENT, Progress
 from ..core.record import Record
 from .blow_groups import common_channels, number_spreads, repeated_blows
-from .field_file import read_bytes
+from .field_file import existing_file
 from .geometry import Geometry
 from .geometry_tables import geometry_beside
 from .header_checks import check_headers
 from .located_shot import locate
+from .polarity_vote import vote_on_polarity
 from .selection import select_traces
 from .shot_in_work import ShotInWork, read_shots
 from .splitting import split_at_source
 from .stacking import merge_blows, stack_blows
-from .trace_faults import trace_faults
+from .trace_faults import examine_traces
 
 
 def prepare_records(
@@ -67,14 +68,15 @@ def prepare_records(
     """
     if not paths:
         raise InputError("no field files given; expected at least one")
-    contents = [(Path(path), read_bytes(path)) for path in paths]  # a missing file is told before any work
-    table = geometry_beside(paths) if geometry is None else geometry
-    shots = read_shots(contents)
+    files = [existing_file(path) for path in paths]  # a missing file is told before any work
+    table = geometry_beside(files) if geometry is None else geometry
+    shots = read_shots(files)
     progress.start("checking records", len(shots))
     for shot in shots:
         _check(shot, table)
         progress.advance()
     number_spreads(shots)
+    vote_on_polarity(shots)
     gathers = [gather for group in repeated_blows(shots) for gather in _gathers_of(group, minimum_traces)]
     records = [record for shot in shots for record in shot.records()]
     return tuple(records), tuple(sorted(gathers, key=lambda gather: (gather.spread, gather.source)))
@@ -90,8 +92,10 @@ def _check(shot: ShotInWork, table: Geometry | None) -> None:
         shot.reason = str(error)
         shot.flags += shot.raw.flags
         return
-    faults = trace_faults(located.gather)
+    shot.examination = examine_traces(located.gather)
+    faults = shot.examination.faults
     shot.located = located
+    shot.raw = dataclasses.replace(shot.raw, data=shot.raw.data[:, :0])
     shot.sound = np.array([index not in faults for index in range(len(located.channels))])
     verdict = check_headers(located, np.flatnonzero(shot.sound))
     shot.gather = verdict.gather
@@ -118,6 +122,8 @@ def _gathers_of(group: list[ShotInWork], minimum_traces: int) -> list[Gather]:
     else:
         parts, reasons = split_at_source(select_traces(merged, kept), minimum_traces)
     for shot in members:
+        if len(parts) == 2:
+            shot.flags.append(f"source inside the spread: split at {merged.source:g} m into two gathers")
         if parts:
             shot.flags += reasons
         else:

@@ -32,7 +32,7 @@ def from_seg2(file: FieldFile) -> RawRecord:
     headers = [{key: str(value) for key, value in trace.stats.seg2.items()} for trace in traces]
     table = common_traces(traces, file.name)
     flags: list[str] = []
-    stacks = [max(1, int(_first_number(header.get("STACK")) or 1)) for header in headers]
+    stacks = [_stack(header) for header in headers]
     factors = [_descaling(header, stack) for header, stack in zip(headers, stacks, strict=True)]
     unit = _unit(headers[0], flags)
     receivers = np.array([_coordinates(header.get("RECEIVER_LOCATION")) for header in headers]) * unit
@@ -61,7 +61,13 @@ def _first_number(text: str | None) -> float | None:
 
 def _descaling(header: dict[str, str], stack: int) -> float:
     factor = _first_number(header.get("DESCALING_FACTOR"))
-    return (factor if factor is not None and factor > 0.0 else 1.0) / stack
+    sensible = factor is not None and 1e-30 < factor < 1e30
+    return (factor if factor is not None and sensible else 1.0) / stack
+
+
+def _stack(header: dict[str, str]) -> int:
+    stack = _first_number(header.get("STACK"))
+    return int(stack) if stack is not None and 1.0 <= stack < 1e6 else 1
 
 
 def _coordinates(text: str | None) -> FloatArray:

@@ -63,7 +63,7 @@ def _shot(file: FieldFile, members: list[tuple[Any, Any]], unit: float, *, sever
         format=file.format,
         data=table.data,
         interval=table.interval,
-        delay=1e-3 * float(np.median([header.delay_recording_time for header in headers])),
+        delay=_delay(headers),
         stack=max(1, int(getattr(headers[0], STACK))),
         receivers=receivers * unit,
         source=source * unit,
@@ -71,6 +71,12 @@ def _shot(file: FieldFile, members: list[tuple[Any, Any]], unit: float, *, sever
         flags=(*flags, *file.said),
         refused=table.refused | marked,
     )
+
+
+def _delay(headers: list[Any]) -> float:
+    """Delay recording time (bytes 109-110, milliseconds) with the scalar of times (bytes 215-216) [s]."""
+    milliseconds = float(np.median([header.delay_recording_time for header in headers]))
+    return 1e-3 * milliseconds * _scale(headers[0].scalar_to_be_applied_to_times)
 
 
 def _positions(headers: list[Any], flags: list[str]) -> tuple[FloatArray, FloatArray]:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, field
 from pathlib import Path
 
@@ -11,10 +12,11 @@ from numpy.typing import NDArray
 from ..core.errors import InputError
 from ..core.gather import Gather
 from ..core.record import Record
-from .field_file import digest, parse
+from .field_file import digest, parse, read_bytes
 from .located_shot import LocatedShot
 from .raw_record import RawRecord
 from .reading import join, shots_of
+from .trace_faults import Examination
 
 JOINED_FORMATS = ("SAC", "miniSEED")
 
@@ -23,15 +25,18 @@ JOINED_FORMATS = ("SAC", "miniSEED")
 class ShotInWork:
     """One shot; `reason` says why it is not used, None so far.
 
-    `files` and `digests` are of the file it came from, or of the files of its single traces. `sound` tells
-    which traces of the located shot's gather may be used, `flags` what is to be told of the record.
+    `files` and `digests` are of the file it came from, or of the files of its single traces. `shape` is that
+    of the samples as read; the raw record lets go of them once it is located. `sound` tells which traces of
+    the located shot may be used, `flags` what is to be told of the record.
     """
 
     files: list[str]
     digests: list[str]
     raw: RawRecord | None = None
+    shape: tuple[int, int] | None = None
     located: LocatedShot | None = None
     gather: Gather | None = None
+    examination: Examination | None = None
     sound: NDArray[np.bool_] = field(default_factory=lambda: np.zeros(0, dtype=np.bool_))
     spread: int = 0
     flags: list[str] = field(default_factory=list)
@@ -47,8 +52,8 @@ class ShotInWork:
                 sha256=sha256,
                 used=self.reason is None,
                 reason=self.reason,
-                traces=None if raw is None else len(raw.data),
-                samples=None if raw is None else raw.data.shape[1],
+                traces=None if self.shape is None else self.shape[0],
+                samples=None if self.shape is None else self.shape[1],
                 interval=None if raw is None else raw.interval,
                 spacing=spacing,
                 source=None if gather is None else gather.source,
@@ -60,11 +65,18 @@ class ShotInWork:
         ]
 
 
-def read_shots(contents: list[tuple[Path, bytes]]) -> list[ShotInWork]:
-    """Return the shots of the files, in their order; a file that cannot be read is a shot with its reason."""
+def read_shots(paths: Sequence[Path]) -> list[ShotInWork]:
+    """Return the shots of the files, in their order; a file that cannot be used is a shot with its reason.
+
+    Raises
+    ------
+    InputError
+        If a file does not exist or is a folder.
+    """
     shots: list[ShotInWork] = []
     seen: dict[str, str] = {}
-    for path, content in contents:
+    for path in paths:
+        content = read_bytes(path)
         sha256 = digest(content)
         if sha256 in seen:
             reason = f"{path.name}: has the same content as {seen[sha256]}, which is used already"
@@ -72,10 +84,15 @@ def read_shots(contents: list[tuple[Path, bytes]]) -> list[ShotInWork]:
             continue
         seen[sha256] = path.name
         try:
-            shots += [ShotInWork([path.name], [sha256], raw) for raw in shots_of(parse(content, path.name))]
+            records = shots_of(parse(content, path.name))
+            shots += [ShotInWork([path.name], [sha256], raw, _shape(raw)) for raw in records]
         except InputError as error:
             shots.append(ShotInWork([path.name], [sha256], reason=str(error)))
     return _joined(shots)
+
+
+def _shape(raw: RawRecord) -> tuple[int, int]:
+    return raw.data.shape[0], raw.data.shape[1]
 
 
 def _joined(shots: list[ShotInWork]) -> list[ShotInWork]:
@@ -94,6 +111,7 @@ def _join(members: list[ShotInWork]) -> ShotInWork:
     whole = ShotInWork(files, [sha256 for member in members for sha256 in member.digests])
     try:
         whole.raw = join([member.raw for member in members if member.raw is not None])
+        whole.shape = _shape(whole.raw)
     except InputError as error:
         whole.reason = str(error)
     return whole

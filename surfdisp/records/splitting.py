@@ -30,7 +30,7 @@ def split_at_source(gather: Gather, minimum_traces: int) -> tuple[list[Gather], 
     low = np.flatnonzero((gather.receivers < gather.source) & ~here)
     high = np.flatnonzero((gather.receivers >= gather.source) & ~here)
     inside = len(low) > 0 and len(high) > 0
-    parts = []
+    parts: list[Gather] = []
     for side, kept in (("low", low), ("high", high)):
         where = f"on the {side} side of the source at {gather.source:g} m" if inside else "in the record"
         if 0 < len(kept) < minimum_traces:
@@ -38,8 +38,6 @@ def split_at_source(gather: Gather, minimum_traces: int) -> tuple[list[Gather], 
         elif len(kept):
             part = select_traces(gather, kept)
             if inside:
-                name = f"{gather.name}, {side} side"
-                note = f"split at the source: the {len(kept)} traces {where}"
-                part = dataclasses.replace(part, name=name, notes=(*part.notes, note))
+                part = dataclasses.replace(part, name=f"{gather.name}, {side} side")
             parts.append(part)
     return parts, reasons

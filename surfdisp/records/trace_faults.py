@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import dataclasses
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -33,14 +34,26 @@ WINDOW = 0.05
 COHERENT_RECORD = 0.5
 """Median coherence that a record must have before single traces of it are called reversed or noise."""
 
+MOSTLY = 0.8
+"""Share of noise-like traces above which the record is noise altogether."""
+
+
+@dataclass(frozen=True)
+class Examination:
+    """`faults`: reason by index of a faulty trace. `coherence` (n_receivers,): of each trace with its
+    neighbours, after reversed ones were turned; NaN where it cannot be told."""
+
+    faults: dict[int, str]
+    coherence: FloatArray
+
 
 def trace_faults(gather: Gather) -> dict[int, str]:
     """Find dead, clipped, reversed and noise-dominated traces.
 
     Dead: constant, or 60 dB below its neighbours. Clipped: a flat top at its extreme with a step beside it.
     Reversed: moved out to its place, its neighbours' beam is its opposite. Noise-dominated: unrelated to its
-    neighbours and as loud in one window as in the next. The last two are judged only where the record as a
-    whole is coherent from trace to trace. Uneven gains are no fault.
+    neighbours, and as loud in one window as in the next. The last two are judged only where the record as a
+    whole is coherent from trace to trace, or where nearly all of it is noise. Uneven gains are no fault.
 
     Parameters
     ----------
@@ -52,16 +65,24 @@ def trace_faults(gather: Gather) -> dict[int, str]:
     dict
         Reason by index of the trace.
     """
+    return examine_traces(gather).faults
+
+
+def examine_traces(gather: Gather) -> Examination:
+    """Do what `trace_faults` does, and return the coherence on which its judgement rests too."""
     dead = _dead(gather)
     faults = dict.fromkeys(dead, "dead: no signal")
     reversed_ones, coherence = _reversed(gather, frozenset(dead))
-    judged = coherence[np.isfinite(coherence)]
-    if judged.size and float(np.median(judged)) >= COHERENT_RECORD:
+    judged = np.isfinite(coherence)
+    coherent = bool(np.any(judged)) and float(np.median(coherence[judged])) >= COHERENT_RECORD
+    noise = judged & (np.nan_to_num(coherence) < UNRELATED) & (_loudest_over_median(gather) < STEADY)
+    if coherent:
         faults |= dict.fromkeys(reversed_ones, "reversed polarity against its neighbours")
-        steady = _loudest_over_median(gather) < STEADY
-        noise = np.flatnonzero((coherence < UNRELATED) & steady)
-        faults |= {int(i): f"noise: coherence with its neighbours {coherence[i]:.2f}" for i in noise}
-    return faults | dict.fromkeys(_clipped(gather) - set(dead), "clipped: flat tops at its extreme")
+    if coherent or noise.sum() > MOSTLY * judged.sum():
+        told = "noise: coherence with its neighbours"
+        faults |= {int(i): f"{told} {coherence[i]:.2f}" for i in np.flatnonzero(noise)}
+    faults |= dict.fromkeys(_clipped(gather) - set(dead), "clipped: flat tops at its extreme")
+    return Examination(faults, coherence)
 
 
 def _dead(gather: Gather) -> list[int]:

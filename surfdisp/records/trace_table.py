@@ -13,6 +13,12 @@ from ..core.errors import FormatError
 
 FloatArray = NDArray[np.float64]
 
+SHORTEST_INTERVAL, LONGEST_INTERVAL = 1e-6, 10.0
+"""Sampling intervals that are believed [s]."""
+
+LARGEST = 1e60
+"""Counts beyond this come from damaged files, and their squares would overflow."""
+
 
 @dataclass(frozen=True)
 class TraceTable:
@@ -29,20 +35,24 @@ def common_traces(traces: list[Any], name: str) -> TraceTable:
     Raises
     ------
     FormatError
-        If the interval is not a positive number.
+        If the interval is not positive, or beyond what any field instrument has.
     """
     shapes = [(float(trace.stats.delta), int(trace.stats.npts)) for trace in traces]
     (interval, samples), _ = Counter(shapes).most_common(1)[0]
-    if not (np.isfinite(interval) and interval > 0.0):
-        raise FormatError(f"{name}: sampling interval must be positive; got {interval} s")
+    if not SHORTEST_INTERVAL <= interval <= LONGEST_INTERVAL:
+        limits = f"{SHORTEST_INTERVAL:g} to {LONGEST_INTERVAL:g} s"
+        raise FormatError(f"{name}: sampling interval must be positive, {limits}; got {interval:g} s")
     data = np.zeros((len(traces), samples))
     refused = {}
     for index, (trace, shape) in enumerate(zip(traces, shapes, strict=True)):
         if shape != (interval, samples):
             refused[index] = f"{shape[1]} samples every {shape[0]:g} s where the others have {samples} every "
             refused[index] += f"{interval:g} s"
-        elif not np.all(np.isfinite(trace.data)):
-            refused[index] = "samples that are not finite numbers"
+            continue
+        with np.errstate(invalid="ignore", over="ignore"):  # a damaged float may be a signalling NaN
+            samples_read = trace.data.astype(np.float64)
+        if np.all(np.abs(samples_read) < LARGEST):  # false for NaN too
+            data[index] = samples_read
         else:
-            data[index] = trace.data
+            refused[index] = "samples that are no sensible numbers"
     return TraceTable(data, interval, refused)

@@ -63,3 +63,9 @@ def field_data():
             pytest.fail(f"{FIELD_DATA} is required")
         pytest.skip(f"{FIELD_DATA} is absent")
     return FIELD_DATA
+
+
+@pytest.fixture(scope="session")
+def make_shot_ever():
+    """The same for tests whose examples share one fixture."""
+    return dispersive_shot

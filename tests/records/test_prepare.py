@@ -161,3 +161,50 @@ def test_order_of_files_does_not_matter(write):
     _, forwards = prepare_records(paths)
     _, backwards = prepare_records(paths[::-1])
     assert list(forwards) == list(backwards)
+
+
+def test_a_reversed_geophone_is_set_aside_where_one_record_alone_cannot_tell(write, make_shot):
+    shots = {name: make_shot(LINE, source, noise=0.02) for name, source in SOURCES.items()}
+    for data in shots.values():
+        data[10] *= -1.0
+    noisy = shots["d.dat"]
+    noisy += (
+        1.5 * np.abs(noisy).max(axis=1, keepdims=True) * np.random.default_rng(1).normal(size=noisy.shape)
+    )
+    records, gathers = prepare_records([write(n, SOURCES[n], data=d) for n, d in shots.items()])
+    assert all("channel 11 set aside: reversed" in " ".join(record.flags) for record in records)
+    assert "in 3 of 3 records that can tell" in " ".join(records[3].flags)
+    assert all(20.0 not in gather.receivers for gather in gathers)
+
+
+SOURCES = {"a.dat": -4.0, "b.dat": -10.0, "c.dat": 50.0, "d.dat": 56.0}
+
+
+def test_two_blows_that_recorded_different_lengths_are_kept_apart(write, make_shot):
+    paths = [write("a.dat", -4.0), write("b.dat", -4.0, data=make_shot(LINE, -4.0, samples=1500))]
+    records, gathers = prepare_records(paths)
+    assert all(record.used for record in records)
+    assert [gather.data.shape[1] for gather in gathers] == [2000, 1500]
+
+
+def test_blows_weigh_by_what_the_instrument_had_stacked(write, make_shot):
+    first, second = make_shot(LINE, -4.0, noise=0.0), 3.0 * make_shot(LINE, -4.0, noise=0.0)
+    paths = [write("a.dat", -4.0, data=first, stack=3), write("b.dat", -4.0, data=second, stack=1)]
+    _, gathers = prepare_records(paths)
+    np.testing.assert_allclose(gathers[0].data, 1.5 * first, atol=1e-6)
+    assert gathers[0].blows == 4
+
+
+def test_progress_is_told_once_per_file(write):
+    class Counter:
+        total, done = 0, 0
+
+        def start(self, title, total):
+            self.total = total
+
+        def advance(self, count=1):
+            self.done += count
+
+    counter = Counter()
+    prepare_records([write("a.dat", -4.0), write("b.dat", 50.0)], progress=counter)
+    assert (counter.total, counter.done) == (2, 2)
