@@ -34,7 +34,10 @@ class Ensemble:
                 f"weights must be one non-negative number per earth; got shape {weights.shape} "
                 f"for {self.vs.shape[0]} earths"
             )
-        set_field(self, "weights", float_array(weights / weights.sum(), "weights"))
+        total = float(weights.sum())
+        if abs(total - 1.0) > 1e-12:  # dividing again what already sums to 1 would move the last bits
+            weights = weights / total
+        set_field(self, "weights", float_array(weights, "weights"))
 
     @classmethod
     def of(cls, earths: Sequence[LayeredEarth], weights: Sequence[float] | FloatArray) -> Ensemble:

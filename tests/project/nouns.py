@@ -118,7 +118,7 @@ def inversions(draw):
     return InversionResult(
         curve=draw(curves()),
         earth=earth,
-        ensemble=Ensemble.of([earth, earth], [0.25, 0.75]),
+        ensemble=Ensemble.of([earth] * 7, draw(array(7, POSITIVE))),
         predicted=draw(array(2)),
         chi_square=draw(ANY),
         resolution=draw(array(len(earth.vs))),

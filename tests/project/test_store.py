@@ -26,7 +26,7 @@ def small(title="one", **products):
     return SurveyResult(**{"title": title, "settings": "[survey]\n", "version": "0.1.0", **empty, **products})
 
 
-@settings(max_examples=60, deadline=None, suppress_health_check=list(HealthCheck))
+@settings(max_examples=40, deadline=None, suppress_health_check=list(HealthCheck))
 @given(survey=SURVEYS)
 def test_every_survey_comes_back_as_it_was(survey):
     with h5py.File(io.BytesIO(), "w") as file:
