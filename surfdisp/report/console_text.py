@@ -15,6 +15,7 @@ from .words import (
     printable,
     probabilities,
     profile_at_legible_depths,
+    whole,
 )
 
 WIDTH = 100
@@ -106,7 +107,7 @@ def _profile(profile: Profile, resolved_depth: float) -> Iterator[str]:
     yield f"  {'depth m':>8} {'median':>8} {'low':>6} {'high':>6}"
     for depth, median, low, high in profile_at_legible_depths(profile):
         extended = "  below the resolved depth" if depth > resolved_depth else ""
-        yield f"  {depth:8.0f} {median:8.0f} {low:6.0f} {high:6.0f}{extended}"
+        yield f"  {depth:8.0f} {whole(median):>8} {whole(low):>6} {whole(high):>6}{extended}"
 
 
 def _wrapped(lead: str, text: str) -> list[str]:

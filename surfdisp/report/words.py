@@ -37,6 +37,11 @@ def number(value: float | None, digits: int = 3) -> str:
     return shown.rstrip("0").rstrip(".") if "." in shown else shown
 
 
+def whole(value: float) -> str:
+    """Return `value` without decimals; "–" for nothing."""
+    return f"{value:.0f}" if math.isfinite(value) else "–"
+
+
 def interval(value: Interval, unit: str = "m/s") -> str:
     """Return a median with its 90 % range, as in "271 m/s (255 to 288)"."""
     return f"{value.median:.0f} {unit} ({value.low:.0f} to {value.high:.0f})"
@@ -46,9 +51,9 @@ def percent(fraction: float) -> str:
     """Return a probability as a whole percentage, never rounded to certainty."""
     if not math.isfinite(fraction):
         return "–"
-    if 0.0 < fraction < 0.005:
+    if 0.0 < fraction < 0.01:
         return "< 1 %"
-    return "> 99 %" if 0.995 < fraction < 1.0 else f"{100.0 * fraction:.0f} %"
+    return "> 99 %" if 0.99 < fraction < 1.0 else f"{100.0 * fraction:.0f} %"
 
 
 def probabilities(classes: dict[str, float]) -> str:
@@ -78,3 +83,11 @@ def profile_at_legible_depths(profile: Profile) -> list[tuple[float, float, floa
     steps = np.searchsorted(profile.depth, depths, side="right") - 1
     rows = zip(depths, profile.median[steps], profile.low[steps], profile.high[steps], strict=True)
     return [(depth, float(median), float(low), float(high)) for depth, median, low, high in rows]
+
+
+def shortened(text: str, length: int) -> str:
+    """Return `text` with its middle left out where it is longer than `length`."""
+    if len(text) <= length:
+        return text
+    head = (length - 1) // 2
+    return f"{text[:head]}…{text[-(length - 1 - head) :]}"

@@ -1,0 +1,116 @@
+"""Report sections on what was done in the field: geometry, records, processing."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+
+import numpy as np
+
+from ..core import Gather, Record, SurveyResult
+from .blocks import NUMBER, TEXT, WIDE, Block, bullets, figures_named, heading, paragraph, settings, table
+from .words import number, printable, shortened
+
+RECORD_ROWS = 20
+FLAG_LINES = 6
+SETTING_LINES = 70
+
+RECORD_COLUMNS = (
+    ("file", TEXT),
+    ("used", TEXT),
+    ("traces", NUMBER),
+    ("interval (ms)", NUMBER),
+    ("source (m)", NUMBER),
+    ("delay (ms)", NUMBER),
+    ("blows", NUMBER),
+    ("SHA-256", TEXT),
+    ("reason, flags", WIDE),
+)
+
+
+def geometry(gathers: Sequence[Gather]) -> Iterator[Block]:
+    """Yield where receivers and sources stood, one paragraph per spread."""
+    yield heading("Site and geometry")
+    for spread in sorted({gather.spread for gather in gathers}):
+        yield paragraph(*_spread([gather for gather in gathers if gather.spread == spread]))
+    if not gathers:
+        yield paragraph("No record could be used.")
+    yield paragraph(
+        "Coordinates, topography beyond receiver elevations, and the water table are not part of field "
+        "records; what was assumed stands among the settings."
+    )
+
+
+def _spread(gathers: Sequence[Gather]) -> Iterator[str]:
+    first = max(gathers, key=lambda gather: len(gather.receivers))
+    yield (
+        f"{len(first.receivers)} vertical receivers from {number(first.receivers[0])} to "
+        f"{number(first.receivers[-1])} m along the line, median spacing {number(first.spacing)} m."
+    )
+    positions = sorted({gather.source for gather in gathers})
+    more = f" and {len(positions) - 16} more" if len(positions) > 16 else ""
+    yield f"Sources at {', '.join(map(number, positions[:16]))}{more} m."
+    length = first.interval * first.data.shape[1]
+    yield f"Sampling interval {number(1e3 * first.interval)} ms, {number(length)} s used of each record."
+    elevations = np.asarray(first.elevations)
+    if np.ptp(elevations) > 0.0:
+        yield f"Receiver elevations from {number(elevations.min())} to {number(elevations.max())} m."
+    off_line = max(gather.source_off_line for gather in gathers)
+    if off_line > 0.0:
+        yield f"Sources up to {number(off_line)} m off the line."
+
+
+def records(table_of: Sequence[Record]) -> Iterator[Block]:
+    """Yield the table of field files with what became of each, and what was doubtful about it."""
+    yield heading("Records")
+    yield table(RECORD_COLUMNS, [_record_row(record) for record in table_of[:RECORD_ROWS]])
+    if len(table_of) > RECORD_ROWS:
+        yield paragraph(f"{len(table_of) - RECORD_ROWS} more records are listed in summary.json.")
+    flags = [f"{printable(record.file)}: {flag}" for record in table_of for flag in record.flags]
+    if flags:
+        yield bullets(flags, FLAG_LINES, "project.h5")
+
+
+def _record_row(record: Record) -> list[str]:
+    flags = {0: "", 1: "1 flag, see below"}.get(len(record.flags), f"{len(record.flags)} flags, see below")
+    return [
+        shortened(printable(record.file), 24),
+        "yes" if record.used else "no",
+        number(record.traces),
+        number(_milli(record.interval)),
+        number(record.source),
+        number(_milli(record.delay)),
+        number(record.stack),
+        record.sha256[:10] or "–",
+        shortened(printable(record.reason or flags), 120),
+    ]
+
+
+def _milli(seconds: float | None) -> float | None:
+    return None if seconds is None else 1e3 * seconds
+
+
+def processing(result: SurveyResult, figures: Sequence[str]) -> Iterator[Block]:
+    """Yield the settings, what was done to each gather, and the traces as used."""
+    yield heading("Processing")
+    yield paragraph(
+        "Records of one source position were aligned and stacked, dead and noisy traces set aside, and "
+        "each gather turned into an image of power over frequency and phase velocity. All settings, "
+        "defaults included:",
+    )
+    yield settings(result.settings, SETTING_LINES)
+    flags = {flag for record in result.records for flag in record.flags}
+    notes = [
+        f"{printable(gather.name)}: {note}"
+        for gather in result.gathers
+        for note in gather.notes
+        if note not in flags
+    ]
+    if notes:
+        yield bullets(notes, FLAG_LINES, "project.h5")
+    yield from figures_named(
+        "figure_records",
+        figures,
+        "Traces as used, each scaled to its largest sample; lines show when waves of the slowest and the "
+        "fastest phase velocity of the curve arrive.",
+        width=88,
+    )

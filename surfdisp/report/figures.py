@@ -1,0 +1,67 @@
+"""Which figures a result has, and how they become files."""
+
+from __future__ import annotations
+
+import os
+from collections.abc import Callable, Iterator
+from functools import partial
+from pathlib import Path
+
+from matplotlib.figure import Figure
+
+from ..core import SurveyResult
+from .curve_figure import picks_over_curve
+from .fit_figure import curve_fit
+from .image_figure import image_with_picks, shot_images
+from .panels import PANELS_PER_SHEET
+from .profile_figure import shear_velocity_profile
+from .record_figure import record_section
+
+RESOLUTION = 180
+"""[dots per inch]"""
+
+Maker = Callable[[], Figure]
+
+
+def figure_makers(result: SurveyResult) -> Iterator[tuple[str, Maker]]:
+    """Yield the name of each figure that the result has, and what draws it.
+
+    Shots come `PANELS_PER_SHEET` to a figure, images one per spread; the second and later ones of a kind are
+    numbered: figure_records, figure_records_2, ...
+    """
+    for number, first in enumerate(range(0, len(result.gathers), PANELS_PER_SHEET), 1):
+        part = slice(first, first + PANELS_PER_SHEET)
+        yield _name("records", number), partial(record_section, result.gathers[part], result.curve)
+    shots_alone = len(result.images) == len(result.stacked_images)  # the images of the spreads show them all
+    for number, first in enumerate(range(0, 0 if shots_alone else len(result.images), PANELS_PER_SHEET), 1):
+        part = slice(first, first + PANELS_PER_SHEET)
+        yield _name("shots", number), partial(shot_images, result.images[part], result.picks[part])
+    spreads = sorted({gather.spread for gather in result.gathers})
+    for number, (image, spread) in enumerate(zip(result.stacked_images, spreads, strict=False), 1):
+        shots = zip(result.gathers, result.picks, strict=True)
+        picks = [pick for gather, pick in shots if gather.spread == spread]
+        yield _name("image", number), partial(image_with_picks, image, picks, result.curve)
+    if result.curve is not None and len(result.curve.frequency):
+        yield "figure_curve", partial(picks_over_curve, result.picks, result.curve, result.gathers)
+    if result.inversion is not None:
+        yield "figure_fit", partial(curve_fit, result.inversion)
+    if result.inversion is not None and result.site is not None:
+        yield "figure_profile", partial(shear_velocity_profile, result.site, result.inversion, result.logs)
+
+
+def write_figures(folder: str | os.PathLike[str], result: SurveyResult) -> list[str]:
+    """Write every figure as PNG into the existing `folder`; return the names of the files."""
+    names = []
+    for name, make in figure_makers(result):
+        make().savefig(
+            Path(folder) / f"{name}.png",
+            dpi=RESOLUTION,
+            metadata={"Software": None},
+            pil_kwargs={"compress_level": 3},  # half the time for a tenth more bytes
+        )
+        names.append(f"{name}.png")
+    return names
+
+
+def _name(kind: str, number: int) -> str:
+    return f"figure_{kind}" if number == 1 else f"figure_{kind}_{number}"

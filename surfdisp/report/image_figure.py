@@ -1,0 +1,159 @@
+"""Dispersion images with the ridge, the picks accepted and refused, and the limits of the array."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+from matplotlib.axes import Axes
+from matplotlib.cm import ScalarMappable
+from matplotlib.colors import Normalize
+from matplotlib.figure import Figure
+from numpy.typing import NDArray
+
+from ..core import DispersionCurve, DispersionImage, Picks
+from ..core.checks import FloatArray
+from .palette import ACCEPTED, BEST, INK, REFUSED, TIDE, finish, sheet, styled
+from .panels import grid, label_outer, legend_below
+from .words import printable, shortened
+
+FREQUENCY = "frequency (Hz)"
+VELOCITY = "phase velocity (m/s)"
+POWER = "power (1: traces agree)"
+ALIAS = "alias of the ridge"
+PIXELS = 400
+"""Rows and columns of an image as drawn."""
+
+
+@styled
+def shot_images(images: Sequence[DispersionImage], picks: Sequence[Picks]) -> Figure:
+    """Return a figure with one panel per shot: its image, its picks and its limits."""
+    figure, panels = grid(len(images), panel_height=1.95, extra_height=0.75)
+    top = _highest_velocity_shown(picks)
+    for axes, image, pick in zip(panels, images, picks, strict=True):
+        _power(axes, image, top)
+        _limits(axes, image)
+        _picks(axes, pick, size=4.0)
+        _alias(axes, image, pick)
+        _frame(axes, image, top)
+        axes.set_title(shortened(printable(image.name), 34))
+    label_outer(panels, FREQUENCY, VELOCITY)
+    _power_scale(figure, panels)
+    legend_below(figure, panels, columns=3)
+    return figure
+
+
+@styled
+def image_with_picks(
+    image: DispersionImage, picks: Sequence[Picks] = (), curve: DispersionCurve | None = None
+) -> Figure:
+    """Return one image over the whole sheet with the picks of one shot or several, limits, and a curve."""
+    figure = sheet(4.1)
+    axes = figure.subplots()
+    top = _highest_velocity_shown(picks)
+    _power(axes, image, top)
+    _limits(axes, image)
+    for pick in picks:
+        _picks(axes, pick, size=7.0 if len(picks) == 1 else 3.0, band=len(picks) == 1)
+    if len(picks) == 1:
+        _alias(axes, image, picks[0])
+    if curve is not None and len(curve.frequency):
+        axes.errorbar(
+            curve.frequency, curve.velocity, curve.sigma, fmt="s", color=BEST, markersize=2.6, capsize=1.5,
+            elinewidth=0.8, markeredgecolor="white", markeredgewidth=0.3, label="combined curve ± sigma",
+            zorder=4,
+        )  # fmt: skip
+    _frame(axes, image, top)
+    title = f"{image.shots} shots stacked" if image.shots > 1 else ""
+    axes.set_title(", ".join(filter(None, [shortened(printable(image.name), 60), title])))
+    axes.set_xlabel(FREQUENCY)
+    axes.set_ylabel(VELOCITY)
+    _power_scale(figure, [axes])
+    legend_below(figure, [axes], columns=3)
+    return figure
+
+
+def _highest_velocity_shown(picks: Sequence[Picks]) -> float:
+    """Return three times the fastest accepted pick [m/s]: the ridge and its aliases, not the empty rest."""
+    fastest = [pick.velocity[pick.accepted & np.isfinite(pick.velocity)].max(initial=0.0) for pick in picks]
+    return 3.0 * float(max(fastest, default=0.0)) or np.inf
+
+
+def _power(axes: Axes, image: DispersionImage, top: float) -> None:
+    if image.power.size:
+        frequencies = np.linspace(image.frequencies[0], image.frequencies[-1], PIXELS)
+        velocities = np.linspace(image.velocities[0], min(top, image.velocities[-1]), PIXELS)
+        rows, columns = _nearest(image.velocities, velocities), _nearest(image.frequencies, frequencies)
+        pixels = image.power.T[rows[:, None], columns]
+        extent = (frequencies[0], frequencies[-1], velocities[0], velocities[-1])
+        axes.imshow(pixels, cmap=TIDE, vmin=0.0, vmax=1.0, origin="lower", aspect="auto", extent=extent)
+
+
+def _nearest(values: FloatArray, wanted: FloatArray) -> NDArray[np.intp]:
+    """Return the index of the entry of `values` nearest to each of `wanted`."""
+    return np.searchsorted(0.5 * (values[1:] + values[:-1]), wanted)
+
+
+def _limits(axes: Axes, image: DispersionImage) -> None:
+    """Draw the wavelengths that bound what the array can tell: lines through the origin."""
+    lines = (
+        (float(np.mean(image.offsets)), (0, (6, 2)), "one wavelength to array centre"),
+        (image.aperture, (0, (6, 2, 1, 2)), "one wavelength along array"),
+        (2.0 * image.spacing, (0, (1.5, 1.5)), "wavelength of two spacings"),
+    )
+    for wavelength, style, label in lines:
+        if np.isfinite(wavelength) and wavelength > 0.0:
+            velocity = wavelength * image.frequencies
+            axes.plot(image.frequencies, velocity, color=INK, linewidth=0.8, linestyle=style, label=label)
+
+
+def _alias(axes: Axes, image: DispersionImage, picks: Picks) -> None:
+    """Draw where replicas of the ridge must lie: wavenumbers k +- 1/spacing (cycles per metre).
+
+    Above the last accepted pick the ridge is continued at that pick's velocity.
+    """
+    accepted = picks.accepted & np.isfinite(picks.velocity)
+    if not (accepted.any() and np.isfinite(image.spacing) and image.spacing > 0.0):
+        return
+    frequency = image.frequencies[image.frequencies >= picks.frequency[accepted][0]]
+    ridge = np.interp(frequency, picks.frequency[accepted], picks.velocity[accepted])
+    for order in (-1.0, 1.0):
+        wavenumber = frequency / ridge + order / image.spacing
+        velocity = np.where(wavenumber > 0.0, frequency / np.where(wavenumber > 0.0, wavenumber, 1.0), np.nan)
+        axes.plot(frequency, velocity, color=REFUSED, linewidth=0.9, linestyle=(0, (3, 1.5)), label=ALIAS)
+
+
+def _picks(axes: Axes, picks: Picks, *, size: float, band: bool = True) -> None:
+    accepted = picks.accepted & np.isfinite(picks.velocity)
+    refused = ~picks.accepted & np.isfinite(picks.velocity)
+    if band and accepted.any():
+        _half_width(axes, picks, accepted)
+    if refused.any():
+        axes.scatter(
+            picks.frequency[refused], picks.velocity[refused], s=1.6 * size, marker="D", facecolors="none",
+            edgecolors=REFUSED, linewidths=0.5, label="ridge, refused", zorder=3,
+        )  # fmt: skip
+    if accepted.any():
+        axes.scatter(
+            picks.frequency[accepted], picks.velocity[accepted], s=size, marker="o", color=ACCEPTED,
+            edgecolors="white", linewidths=0.2, label="pick, accepted", zorder=3,
+        )  # fmt: skip
+
+
+def _half_width(axes: Axes, picks: Picks, accepted: NDArray[np.bool_]) -> None:
+    for side in (-1.0, 1.0):
+        edge = np.where(accepted, picks.velocity + side * picks.half_width, np.nan)
+        axes.plot(picks.frequency, edge, color=ACCEPTED, linewidth=0.7, label="half-width of the ridge")
+
+
+def _frame(axes: Axes, image: DispersionImage, top: float) -> None:
+    """Keep the frame to what was scanned and is shown, whatever the limits' lines reach."""
+    if image.power.size:
+        axes.set_xlim(image.frequencies[0], image.frequencies[-1])
+        axes.set_ylim(image.velocities[0], min(top, image.velocities[-1]))
+    finish(axes)
+
+
+def _power_scale(figure: Figure, panels: list[Axes]) -> None:
+    scale = ScalarMappable(Normalize(0.0, 1.0), TIDE)
+    figure.colorbar(scale, ax=panels, label=POWER, fraction=0.03, pad=0.01, aspect=30)
