@@ -33,24 +33,19 @@ class LocatedShot:
         Channel number, counted from 1 in the file, of each trace of the gather.
     layout : array (n_channels, 3)
         x, y, z of all channels as given, zero where nothing is: what tells one spread from another.
-    stack : int
-        Blows already stacked by the instrument.
     labels : tuple of str
         What the header calls the shot.
     from_table : bool
         Whether the source position comes from the user's table rather than the header.
     flags : tuple of str
-    format : str
     """
 
     gather: Gather
     channels: NDArray[np.int64]
     layout: FloatArray
-    stack: int
     labels: tuple[str, ...]
     from_table: bool
     flags: tuple[str, ...]
-    format: str
 
 
 def locate(raw: RawRecord, geometry: Geometry | None) -> LocatedShot:
@@ -69,69 +64,95 @@ def locate(raw: RawRecord, geometry: Geometry | None) -> LocatedShot:
         raise InputError(told if told.startswith(raw.file) else f"{raw.file}: {told}") from error
 
 
+@dataclass(frozen=True)
+class _Places:
+    """Positions along the line and elevations, of all channels (NaN where unknown) and of the source."""
+
+    positions: FloatArray
+    heights: FloatArray
+    layout: FloatArray
+    source: float
+    source_off_line: float
+    source_height: float
+    bend: float
+
+
 def _located(raw: RawRecord, table: Geometry) -> LocatedShot:
     shot = table.shots.get(raw.file, ShotGeometry())
-    flags = list(raw.flags)
-    refused = dict(raw.refused)
-    places = _receiver_places(raw, table)
-    places_known = np.isfinite(places[:, 0])
-    _demand_receivers(raw, places[places_known, 0:2])
-    for index in np.flatnonzero(~places_known):
-        refused[int(index)] = "no receiver position in the header"
-    source = raw.source.copy()
-    if shot.source is not None:
-        source[0] = shot.source
-        flags.append(f"source position from {table.origin}")
-    if not np.isfinite(source[0]):
-        raise InputError(f"no source position in the header; {ADVICE}")
-    line = project(places[places_known, :2], source[:2])
-    positions = np.full(len(places), np.nan)
-    positions[places_known] = line.receivers
-    order = _in_order(positions, refused)
+    flags, refused = list(raw.flags), dict(raw.refused)
+    places = _find_places(raw, table, shot, flags)
+    unplaced = np.flatnonzero(np.isnan(places.positions))
+    refused |= dict.fromkeys(map(int, unplaced), "no receiver position in the header")
+    order = _in_order(places.positions, refused)
     gather = Gather(
         data=raw.data[order],
         interval=raw.interval,
-        receivers=positions[order],
-        source=line.source if shot.source is None else shot.source,
+        receivers=places.positions[order],
+        source=places.source,
         delay=raw.delay if shot.delay is None else shot.delay,
-        source_off_line=_off_line(shot, line, flags),
-        elevations=np.nan_to_num(places[order, 2]),
-        source_elevation=_source_elevation(shot, source, places[order, 2], positions[order]),
+        source_off_line=places.source_off_line,
+        elevations=places.heights[order],
+        source_elevation=places.source_height,
         name=raw.file,
         blows=raw.stack,
     )
-    flags += _about_the_line(gather, line, positions)
+    flags += _about_the_line(gather, places.bend, places.positions)
     flags += [f"channel {index + 1} set aside: {reason}" for index, reason in sorted(refused.items())]
     return LocatedShot(
         gather=gather,
         channels=order + 1,
-        layout=np.nan_to_num(places),
-        stack=raw.stack,
+        layout=places.layout,
         labels=raw.labels,
         from_table=shot.source is not None,
         flags=tuple(flags),
-        format=raw.format,
     )
 
 
-def _receiver_places(raw: RawRecord, table: Geometry) -> FloatArray:
-    """x, y, z of all channels; the table wins, and then its line is straight."""
-    places = raw.receivers.copy()
-    positions = table.positions(raw.file, len(places))
+def _find_places(raw: RawRecord, table: Geometry, shot: ShotGeometry, flags: list[str]) -> _Places:
+    receivers, source = _coordinates(raw, table, shot)
+    known = np.isfinite(receivers[:, 0])
+    _demand_positions(raw, receivers[known, :2], source)
+    if shot.source is not None:
+        flags.append(f"source position from {table.origin}")
+    line = project(receivers[known, :2], source[:2])
+    positions = np.full(len(receivers), np.nan)
+    positions[known] = line.receivers
+    along = line.source if shot.source is None else shot.source
+    heights = np.nan_to_num(receivers[:, 2])
+    nearest = int(np.nanargmin(np.abs(positions - along)))
+    return _Places(
+        positions=positions,
+        heights=heights,
+        layout=np.nan_to_num(receivers),
+        source=along,
+        source_off_line=_off_line(shot, line, flags),
+        source_height=_source_height(shot, source[2], heights, nearest, flags),
+        bend=line.bend,
+    )
+
+
+def _coordinates(raw: RawRecord, table: Geometry, shot: ShotGeometry) -> tuple[FloatArray, FloatArray]:
+    """x, y, z of all channels and of the source; the table wins, and then its line is straight."""
+    receivers, source = raw.receivers.copy(), raw.source.copy()
+    positions = table.positions(raw.file, len(receivers))
     if positions is not None:
-        places[:, 0] = positions
-        places[:, 1] = np.nan
-    heights = table.heights(raw.file, len(places))
+        receivers[:, 0] = positions
+        receivers[:, 1] = source[1] = np.nan  # the header's y has nothing to do with the table's line
+    heights = table.heights(raw.file, len(receivers))
     if heights is not None:
-        places[:, 2] = heights
-    return places
+        receivers[:, 2] = heights
+    if shot.source is not None:
+        source[0] = shot.source
+    return receivers, source
 
 
-def _demand_receivers(raw: RawRecord, known: FloatArray) -> None:
+def _demand_positions(raw: RawRecord, known: FloatArray, source: FloatArray) -> None:
     if len(known) == 0:
         raise InputError(f"no receiver positions in the header; {ADVICE}")
     if len(raw.data) > 1 and len(np.unique(np.nan_to_num(known), axis=0)) < 2:
         raise InputError(f"all {len(known)} receivers are at {known[0, 0]:g} m in the header; {ADVICE}")
+    if not np.isfinite(source[0]):
+        raise InputError(f"no source position in the header; {ADVICE}")
 
 
 def _in_order(positions: FloatArray, refused: dict[int, str]) -> NDArray[np.int64]:
@@ -157,27 +178,30 @@ def _off_line(shot: ShotGeometry, line: OnLine, flags: list[str]) -> float:
         distance = 0.0
     else:
         distance = line.source_off_line
-    if distance > 0.0:
-        flags.append(f"source {distance:.2f} m off the line; slant offsets are used")
+    if distance < SAME_PLACE:
+        return 0.0
+    flags.append(f"source {distance:.2f} m off the line; slant offsets are used")
     return distance
 
 
-def _source_elevation(
-    shot: ShotGeometry, source: FloatArray, heights: FloatArray, positions: FloatArray
+def _source_height(
+    shot: ShotGeometry, header: float, heights: FloatArray, nearest: int, flags: list[str]
 ) -> float:
     """From the table, else the header, else the ground at the nearest receiver."""
     if shot.source_elevation is not None:
         return shot.source_elevation
-    if np.isfinite(source[2]):
-        return float(source[2])
-    return float(np.nan_to_num(heights[np.argmin(np.abs(positions - source[0]))]))
+    ground = float(heights[nearest])
+    if header == 0.0 and np.all(heights != 0.0):
+        flags.append(f"source elevation is 0 m in the header; {ground:g} m at the nearest receiver is used")
+        return ground
+    return float(header) if np.isfinite(header) else ground
 
 
-def _about_the_line(gather: Gather, line: OnLine, positions: FloatArray) -> list[str]:
+def _about_the_line(gather: Gather, bend: float, positions: FloatArray) -> list[str]:
     """What is odd about the receivers' positions."""
     flags = []
-    if line.bend > 0.1 * gather.spacing:
-        flags.append(f"receivers lie up to {line.bend:.2f} m beside their straight line")
+    if bend > 0.1 * gather.spacing:
+        flags.append(f"receivers lie up to {bend:.2f} m beside their straight line")
     known = positions[np.isfinite(positions)]
     steps = np.sign(np.diff(known))
     if len(known) > 2 and np.any(steps > 0) and np.any(steps < 0):

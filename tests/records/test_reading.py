@@ -230,13 +230,13 @@ def test_sac_traces_of_one_shot_make_one_gather(tmp_path, make_shot):
     line = 2.0 * np.arange(12)
     data = make_shot(line, -4.0)
     paths = [
-        sac(tmp_path / f"{i:02}.sac", row, dist=(4.0 + x) / 1000.0, b=-0.02, o=0.0)
+        sac(tmp_path / f"{i:02}.sac", row, dist=(4.0 + x) / 1000.0, b=-0.02, o=0.03)
         for i, (row, x) in enumerate(zip(data, line, strict=True))
     ]
     gather = read_gather(paths)
     np.testing.assert_allclose(gather.receivers, 4.0 + line, rtol=1e-6)
     assert gather.source == 0.0
-    assert gather.delay == pytest.approx(-0.02)
+    assert gather.delay == pytest.approx(-0.05)
     np.testing.assert_allclose(gather.data, data, rtol=1e-6, atol=1e-6)
     records, gathers = prepare_records(paths)
     assert len(records) == 12
@@ -330,8 +330,35 @@ def test_odd_positions_are_told(tmp_path):
     assert notes[3] == ("channel 6 set aside: at 8 m like channel 5",)
 
 
+def test_a_wider_gap_in_an_even_line_is_no_fault(tmp_path):
+    line = np.cumsum([0.0, 2.0, 2.0, 2.0, 2.0, 3.0, 5.0, 2.0, 2.0, 2.0, 2.0, 2.0])
+    assert read_gather(seg2(tmp_path / "a.dat", data=np.ones((12, 5)), receivers=line)).notes == ()
+
+
 def test_uneven_spacing_is_no_fault(tmp_path):
     line = np.array([0.0, 0.5, 1.0, 2.0, 3.0, 5.0, 7.0, 10.0, 14.0, 18.0, 24.0, 30.0])
     gather = read_gather(seg2(tmp_path / "a.dat", data=np.ones((12, 5)), receivers=line))
     np.testing.assert_array_equal(gather.receivers, line)
     assert gather.notes == ()
+
+
+def test_a_source_elevation_left_at_zero_among_high_receivers_is_doubted(tmp_path):
+    places = [(x, 0.0, 120.0 + x) for x in LINE]
+    gather = read_gather(seg2(tmp_path / "a.dat", receivers=places, source=(-4.0, 0.0, 0.0)))
+    assert gather.source_elevation == 120.0
+    assert gather.notes == ("source elevation is 0 m in the header; 120 m at the nearest receiver is used",)
+
+
+def test_a_table_of_receivers_makes_the_headers_y_of_the_source_meaningless(tmp_path):
+    places = [(5000.0 + x, 9000.0) for x in LINE]
+    path = seg2(tmp_path / "a.dat", receivers=places, source=(-4.0, 9000.0))
+    gather = read_gather(path, geometry=Geometry(receivers=LINE))
+    np.testing.assert_array_equal(gather.receivers, LINE)
+    assert (gather.source, gather.source_off_line) == (-4.0, 0.0)
+
+
+def test_the_ground_under_the_source_is_found_along_an_askew_line_too(tmp_path):
+    along = np.array([0.6, 0.8])
+    places = [(*(np.array([1000.0, 500.0]) + x * along), 5.0 + x) for x in LINE]
+    source = tuple(np.array([1000.0, 500.0]) + 4.4 * along)
+    assert read_gather(seg2(tmp_path / "a.dat", receivers=places, source=source)).source_elevation == 9.5

@@ -96,6 +96,14 @@ def test_coherence_is_the_same_seen_from_the_other_end(make_shot):
     )
 
 
+def test_each_side_of_the_source_is_judged_by_itself(make_shot):
+    slow_side = 23.0 + 2.5 * (LINE[:12] - 23.0)  # the ground is 2.5 times slower there
+    data = np.concatenate([make_shot(slow_side, 23.0, noise=0.01), make_shot(LINE[12:], 23.0, noise=0.01)])
+    gather = gather_of(data, 23.0)
+    assert np.all(neighbour_coherence(gather) > 0.8)
+    assert kinds(gather) == {}
+
+
 def test_too_few_neighbours_leave_the_question_open(make_shot):
     line = LINE[:3]
     gather = gather_of(make_shot(line, -4.0), receivers=line)
