@@ -22,9 +22,10 @@ def heading(text: str) -> Block:
     return {"kind": "heading", "text": text}
 
 
-def paragraph(*sentences: str) -> Block:
-    """Return a paragraph of the sentences that say something."""
-    return {"kind": "text", "text": shown(" ".join(filter(None, sentences)), 4 * LONGEST_ENTRY)}
+def paragraph(*sentences: str, leads_on: bool = False) -> Block:
+    """Return a paragraph of the sentences that say something; one that leads on stays with what follows."""
+    text = shown(" ".join(filter(None, sentences)), 4 * LONGEST_ENTRY)
+    return {"kind": "text", "text": text, "leads_on": leads_on}
 
 
 def bullets(entries: Sequence[str], most: int, elsewhere: str) -> Block:

@@ -61,7 +61,7 @@ def _curve(axes: Axes, curve: DispersionCurve) -> None:
 
 def _label(picks: Picks, gather: Gather | None) -> str:
     source = "" if gather is None else f", {number(gather.source)} m"
-    return f"{shortened(printable(picks.name), 18)}{source}"
+    return f"{shortened(printable(picks.name), 24)}{source}"
 
 
 def _style(index: int, gather: Gather | None) -> dict[str, Any]:

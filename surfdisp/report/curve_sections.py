@@ -30,11 +30,12 @@ def picking(result: SurveyResult, figures: Sequence[str]) -> Iterator[Block]:
         "of the array centre (near field), the length of the array, and two receiver spacings.",
         width=88,
     )
+    shown = "the picks of every shot, the combined curve" if result.curve is not None else "what was refused"
     yield from figures_named(
         "figure_image",
         figures,
-        "Images of all shots of a spread, stacked, with the picks of every shot, the combined curve, and "
-        "the same limits.",
+        f"Image of each spread, its shots stacked, with {shown}, and the limits of the array (the near field "
+        "begins at one wavelength to the array centre).",
         width=80 if len(result.stacked_images) == 1 else 66,
         most=IMAGES,
     )

@@ -99,7 +99,8 @@ def _purpose(result: SurveyResult) -> Iterator[Block]:
 
 def _outcome(result: SurveyResult) -> str:
     if result.inversion is None:
-        return f"No profile is given, and this is why. {' '.join(result.warnings[:3])}"
+        reasons = "; ".join(warning.rstrip(".") for warning in result.warnings[:3])
+        return f"No profile is given: {reasons or 'nothing could be picked'}."
     return (
         "The profile explains the measured curve with a mean squared misfit of "
         f"{number(result.inversion.chi_square)} in units of its variance."

@@ -43,11 +43,13 @@ def inversion(found: InversionResult, figures: Sequence[str]) -> Iterator[Block]
         f"Mean squared misfit {number(found.chi_square)} in units of the variance (1 is a fit to the noise).",
         f"Ranges come from {len(found.ensemble)} weighted earths: covariance around the best ones, several "
         "layerings, and the extension below the data. Layerings tried:",
+        leads_on=True,
     )
     yield bullets(found.layerings, LAYERING_LINES, "project.h5")
     yield paragraph(
         "Best earth; resolution 1 means that the data decide a layer's velocity, 0 that the prior does. Vp "
-        "and density are assumed as the settings say, not measured:"
+        "and density are assumed as the settings say, not measured:",
+        leads_on=True,
     )
     yield table(EARTH_COLUMNS, _earth_rows(found.earth, found.resolution.tolist()))
     yield from figures_named(
@@ -79,6 +81,7 @@ def profile(site: SiteResult, figures: Sequence[str]) -> Iterator[Block]:
         "(common practice); depths with an asterisk lie below it. The table quotes the step that holds at "
         "each depth; every step is in profile.csv. G0 is the small-strain shear modulus, density times the "
         "square of Vs.",
+        leads_on=True,
     )
     steps = table(PROFILE_COLUMNS, _profile_rows(site))
     picture = figures_named(
@@ -115,6 +118,7 @@ def site_quantities(site: SiteResult) -> Iterator[Block]:
         f"Travel-time averages over other depths: {'; '.join(averages)}." if averages else "",
         _check(site),
         f"Site classes ({VELOCITY_ONLY}):",
+        leads_on=True,
     )
     rows = [
         [

@@ -93,24 +93,27 @@ def processing(result: SurveyResult, figures: Sequence[str]) -> Iterator[Block]:
     """Yield the settings, what was done to each gather, and the traces as used."""
     yield heading("Processing")
     yield paragraph(
-        "Records of one source position were aligned and stacked, dead and noisy traces set aside, and "
-        "each gather turned into an image of power over frequency and phase velocity. All settings, "
-        "defaults included:",
+        "Records of one source position were aligned and stacked, dead and noisy traces set aside, and each "
+        "gather turned into an image of power over frequency and phase velocity.",
+        "All settings, defaults included:" if result.settings else "",
+        leads_on=True,
     )
-    yield settings(result.settings, SETTING_LINES)
-    flags = {flag for record in result.records for flag in record.flags}
-    notes = [
-        f"{printable(gather.name)}: {note}"
-        for gather in result.gathers
-        for note in gather.notes
-        if note not in flags
-    ]
+    if result.settings:
+        yield settings(result.settings, SETTING_LINES)
+    notes = _notes_beyond_flags(result)
     if notes:
         yield bullets(notes, FLAG_LINES, "project.h5")
-    yield from figures_named(
-        "figure_records",
-        figures,
-        "Traces as used, each scaled to its largest sample; lines show when waves of the slowest and the "
-        "fastest phase velocity of the curve arrive.",
-        width=88,
+    arrivals = (
+        "; lines show when waves of the slowest and the fastest phase velocity of the curve arrive"
+        if result.curve is not None
+        else ""
     )
+    caption = f"Traces as used, each scaled to its largest sample{arrivals}."
+    yield from figures_named("figure_records", figures, caption, width=88)
+
+
+def _notes_beyond_flags(result: SurveyResult) -> list[str]:
+    """Return what the gathers tell beyond the flags of the record table."""
+    flags = tuple(flag for record in result.records for flag in record.flags)
+    notes = [note for gather in result.gathers for note in gather.notes if not note.endswith(flags)]
+    return list(dict.fromkeys(notes))

@@ -9,11 +9,12 @@ from pathlib import Path
 
 from matplotlib.figure import Figure
 
-from ..core import SurveyResult
+from ..core import InversionResult, SurveyResult
 from .curve_figure import picks_over_curve
 from .fit_figure import curve_fit
 from .image_figure import image_with_picks, shot_images
 from .panels import PANELS_PER_SHEET
+from .predictions import ensemble_curves
 from .profile_figure import shear_velocity_profile
 from .record_figure import record_section
 
@@ -36,7 +37,7 @@ def figure_makers(result: SurveyResult) -> Iterator[tuple[str, Maker]]:
     for number, first in enumerate(range(0, 0 if shots_alone else len(result.images), PANELS_PER_SHEET), 1):
         part = slice(first, first + PANELS_PER_SHEET)
         yield _name("shots", number), partial(shot_images, result.images[part], result.picks[part])
-    spreads = sorted({gather.spread for gather in result.gathers})
+    spreads = list(dict.fromkeys(gather.spread for gather in result.gathers))
     for number, (image, spread) in enumerate(zip(result.stacked_images, spreads, strict=False), 1):
         shots = zip(result.gathers, result.picks, strict=True)
         picks = [pick for gather, pick in shots if gather.spread == spread]
@@ -44,7 +45,7 @@ def figure_makers(result: SurveyResult) -> Iterator[tuple[str, Maker]]:
     if result.curve is not None and len(result.curve.frequency):
         yield "figure_curve", partial(picks_over_curve, result.picks, result.curve, result.gathers)
     if result.inversion is not None:
-        yield "figure_fit", partial(curve_fit, result.inversion)
+        yield "figure_fit", partial(_fit, result.inversion)
     if result.inversion is not None and result.site is not None:
         yield "figure_profile", partial(shear_velocity_profile, result.site, result.inversion, result.logs)
 
@@ -65,3 +66,7 @@ def write_figures(folder: str | os.PathLike[str], result: SurveyResult) -> list[
 
 def _name(kind: str, number: int) -> str:
     return f"figure_{kind}" if number == 1 else f"figure_{kind}_{number}"
+
+
+def _fit(inversion: InversionResult) -> Figure:
+    return curve_fit(inversion, ensemble_curves(inversion))

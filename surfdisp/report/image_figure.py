@@ -33,8 +33,8 @@ def shot_images(images: Sequence[DispersionImage], picks: Sequence[Picks]) -> Fi
     for axes, image, pick in zip(panels, images, picks, strict=True):
         _power(axes, image, top)
         _limits(axes, image)
-        _picks(axes, pick, size=4.0)
-        _alias(axes, image, pick)
+        _picks(axes, pick, size=2.5)
+        _alias(axes, image, *_accepted(pick))
         _frame(axes, image, top)
         axes.set_title(shortened(printable(image.name), 34))
     label_outer(panels, FREQUENCY, VELOCITY)
@@ -54,10 +54,11 @@ def image_with_picks(
     _power(axes, image, top)
     _limits(axes, image)
     for pick in picks:
-        _picks(axes, pick, size=7.0 if len(picks) == 1 else 3.0, band=len(picks) == 1)
-    if len(picks) == 1:
-        _alias(axes, image, picks[0])
+        _picks(axes, pick, size=4.0 if len(picks) == 1 else 1.5, band=len(picks) == 1)
+    if curve is None and len(picks) == 1:
+        _alias(axes, image, *_accepted(picks[0]))
     if curve is not None and len(curve.frequency):
+        _alias(axes, image, curve.frequency, curve.velocity)
         axes.errorbar(
             curve.frequency, curve.velocity, curve.sigma, fmt="s", color=BEST, markersize=2.6, capsize=1.5,
             elinewidth=0.8, markeredgecolor="white", markeredgewidth=0.3, label="combined curve ± sigma",
@@ -107,16 +108,20 @@ def _limits(axes: Axes, image: DispersionImage) -> None:
             axes.plot(image.frequencies, velocity, color=INK, linewidth=0.8, linestyle=style, label=label)
 
 
-def _alias(axes: Axes, image: DispersionImage, picks: Picks) -> None:
-    """Draw where replicas of the ridge must lie: wavenumbers k +- 1/spacing (cycles per metre).
-
-    Above the last accepted pick the ridge is continued at that pick's velocity.
-    """
+def _accepted(picks: Picks) -> tuple[FloatArray, FloatArray]:
     accepted = picks.accepted & np.isfinite(picks.velocity)
-    if not (accepted.any() and np.isfinite(image.spacing) and image.spacing > 0.0):
+    return picks.frequency[accepted], picks.velocity[accepted]
+
+
+def _alias(axes: Axes, image: DispersionImage, ridge_frequency: FloatArray, ridge: FloatArray) -> None:
+    """Draw where replicas of a ridge must lie: wavenumbers k +- 1/spacing (cycles per metre).
+
+    Above its last point the ridge is continued at that point's velocity.
+    """
+    if not (len(ridge) and np.isfinite(image.spacing) and image.spacing > 0.0):
         return
-    frequency = image.frequencies[image.frequencies >= picks.frequency[accepted][0]]
-    ridge = np.interp(frequency, picks.frequency[accepted], picks.velocity[accepted])
+    frequency = image.frequencies[image.frequencies >= ridge_frequency[0]]
+    ridge = np.interp(frequency, ridge_frequency, ridge)
     for order in (-1.0, 1.0):
         wavenumber = frequency / ridge + order / image.spacing
         velocity = np.where(wavenumber > 0.0, frequency / np.where(wavenumber > 0.0, wavenumber, 1.0), np.nan)
@@ -130,13 +135,13 @@ def _picks(axes: Axes, picks: Picks, *, size: float, band: bool = True) -> None:
         _half_width(axes, picks, accepted)
     if refused.any():
         axes.scatter(
-            picks.frequency[refused], picks.velocity[refused], s=1.6 * size, marker="D", facecolors="none",
+            picks.frequency[refused], picks.velocity[refused], s=2.0 * size, marker="D", facecolors="none",
             edgecolors=REFUSED, linewidths=0.5, label="ridge, refused", zorder=3,
         )  # fmt: skip
     if accepted.any():
         axes.scatter(
             picks.frequency[accepted], picks.velocity[accepted], s=size, marker="o", color=ACCEPTED,
-            edgecolors="white", linewidths=0.2, label="pick, accepted", zorder=3,
+            linewidths=0.0, label="pick, accepted", zorder=3,
         )  # fmt: skip
 
 

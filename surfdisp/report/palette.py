@@ -65,9 +65,9 @@ def styled(function: F) -> F:
     return made
 
 
-def sheet(height: float) -> Figure:
-    """Return an empty figure of the report's width and `height` [inch], drawn without any window system."""
-    figure = Figure(figsize=(WIDTH, height), layout="constrained")
+def sheet(height: float, width: float = WIDTH) -> Figure:
+    """Return an empty figure of that size [inch], drawn without any window system."""
+    figure = Figure(figsize=(width, height), layout="constrained")
     FigureCanvasAgg(figure)
     return figure
 

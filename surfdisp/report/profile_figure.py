@@ -13,6 +13,7 @@ from ..core import Ensemble, InversionResult, LayeredEarth, Profile, SiteResult
 from ..core.checks import FloatArray
 from .palette import BAND, BEST, FAINT, HAIR, INK, LOG, finish, sheet, styled
 from .panels import legend_below
+from .predictions import representative
 from .words import interval, number
 
 EARTHS_SHOWN = 60
@@ -23,8 +24,8 @@ def shear_velocity_profile(
     site: SiteResult, inversion: InversionResult, logs: Sequence[Profile] = ()
 ) -> Figure:
     """Return shear velocity against depth, and beside it how far the data decide each layer."""
-    figure = sheet(5.0)
-    main, side = figure.subplots(1, 2, sharey=True, width_ratios=(4.2, 1.0))
+    figure = sheet(4.8, width=4.4)
+    main, side = figure.subplots(1, 2, sharey=True, width_ratios=(3.6, 1.0))
     bottom = max(1.02 * float(site.profile.depth[-1]), 1.15 * site.resolved_depth)
     _earths(main, inversion.ensemble, bottom)
     _ranges(main, site.profile, bottom)
@@ -54,7 +55,7 @@ def shear_velocity_profile(
     main.set_xlabel("shear velocity (m/s)")
     main.set_ylabel("depth (m)")
     main.set_title(f"Vs30 {interval(site.vs30)}, 90 % range in brackets")
-    legend_below(figure, [main], columns=5)
+    legend_below(figure, [main], columns=3)
     _resolution(side, inversion.earth, inversion.resolution, bottom)
     for axes in (main, side):
         axes.axhline(site.resolved_depth, color=INK, linewidth=0.8, linestyle=(0, (6, 2)))
@@ -70,17 +71,10 @@ def shear_velocity_profile(
 def _earths(axes: Axes, ensemble: Ensemble, bottom: float) -> None:
     lines = [
         np.column_stack(_corners(earth.depth, earth.vs, bottom)[::-1])
-        for earth in (ensemble.earth(index) for index in representative(ensemble.weights, EARTHS_SHOWN))
+        for earth in (ensemble.earth(index) for index in representative(ensemble, EARTHS_SHOWN))
     ]
     label = f"{len(lines)} earths of the ensemble"
     axes.add_collection(LineCollection(lines, colors=BAND, linewidths=0.4, alpha=0.7, label=label))
-
-
-def representative(weights: FloatArray, count: int) -> list[int]:
-    """Return the indices of up to `count` members, evenly spaced in cumulative weight; no chance involved."""
-    levels = (np.arange(count) + 0.5) / count
-    last = len(weights) - 1
-    return sorted({min(int(index), last) for index in np.searchsorted(np.cumsum(weights), levels)})
 
 
 def _ranges(axes: Axes, profile: Profile, bottom: float) -> None:

@@ -24,7 +24,6 @@ from surfdisp.report import (
 )
 from surfdisp.report.figures import figure_makers
 from surfdisp.report.palette import ACCEPTED, REFUSED, TIDE
-from surfdisp.report.profile_figure import representative
 
 from .conftest import survey_of, without_picks
 
@@ -219,13 +218,6 @@ def test_the_profile_draws_the_steps_of_median_and_best_earth(survey):
     assert axes.yaxis_inverted()
     assert survey.site.resolved_depth in [rule.get_ydata()[0] for rule in axes.lines]
     assert f"Vs30 {survey.site.vs30.median:.0f} m/s" in axes.get_title(loc="left")
-
-
-def test_ensemble_members_are_shown_by_their_weight():
-    weights = np.array([0.5, 0.0, 0.25, 0.25])
-    assert representative(weights, 4) == [0, 2, 3]
-    assert representative(np.full(200, 1 / 200), 60)[:4] == [1, 4, 8, 11]
-    assert len(representative(np.full(200, 1 / 200), 60)) == 60
 
 
 def test_misfits_are_in_units_of_sigma(survey):

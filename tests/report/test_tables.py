@@ -35,7 +35,8 @@ def test_summary_json_has_the_keys_of_the_contract(tmp_path, survey):
     assert made["site_class"]["ASCE 7-22"] == survey.site.site_class["ASCE 7-22"]
     assert list(made["profile"][0]) == ["depth", "median", "low", "high"]
     assert list(made["curve"][0]) == ["frequency", "velocity", "sigma", "wave", "kind", "mode"]
-    assert [row["velocity"] for row in made["curve"]] == survey.curve.velocity.tolist()
+    for name in ("frequency", "velocity", "sigma"):
+        assert [row[name] for row in made["curve"]] == getattr(survey.curve, name).tolist()
     assert [row["low"] for row in made["profile"]] == survey.site.profile.low.tolist()
     assert {tuple(row) for row in made["records"]} == {("file", "sha256", "used", "reason")}
     assert made["records"][0] == {"file": "1001.dat", "sha256": "10" * 32, "used": True, "reason": None}
