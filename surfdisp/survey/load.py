@@ -61,7 +61,9 @@ def settings_for_files(files: Sequence[Path]) -> Settings:
 def settings_text(settings: Settings) -> str:
     """Write settings as TOML, defaults included; records by base name, so that the text is portable."""
     table = settings.model_dump(exclude_none=True, mode="json")
-    table["records"]["files"] = [Path(name).name for name in settings.records.files]
+    named = (("records", "files"), ("records", "geometry_tables"), ("site", "borehole_logs"))
+    for section, key in named:
+        table[section][key] = [Path(name).name for name in table[section][key]]
     return tomli_w.dumps(table)
 
 
@@ -78,8 +80,9 @@ def _with_paths(settings: Settings, folder: Path) -> Settings:
     records = settings.records
     files = [str(file) for pattern in records.files for file in _matches(folder, pattern)]
     changes: dict[str, Any] = {"files": tuple(dict.fromkeys(files))}
-    if records.geometry_csv is not None:
-        changes["geometry_csv"] = str(existing_file(folder / records.geometry_csv))
+    changes["geometry_tables"] = tuple(
+        str(existing_file(folder / table)) for table in records.geometry_tables
+    )
     logs = tuple(str(existing_file(folder / log)) for log in settings.site.borehole_logs)
     return settings.model_copy(
         update={

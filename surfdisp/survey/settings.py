@@ -15,6 +15,9 @@ NonNegative = Annotated[float, Field(ge=0.0, allow_inf_nan=False)]
 Finite = Annotated[float, Field(allow_inf_nan=False)]
 
 
+Limits = tuple[float | None, float | None]
+
+
 class Section(BaseModel):
     """A section of the configuration: immutable, and unknown names are refused."""
 
@@ -22,37 +25,39 @@ class Section(BaseModel):
 
 
 class ReceiverSettings(Section):
-    """Receiver layout that wins over the headers: evenly spaced, or one position per channel."""
+    """Receivers, at even distances or one position per channel; wins over headers and tables."""
 
     first_m: Finite = 0.0
     spacing_m: Positive | None = None
-    count: Annotated[int, Field(ge=2)] | None = None
     positions_m: tuple[Finite, ...] | None = None
     elevations_m: tuple[Finite, ...] | None = None
 
     @model_validator(mode="after")
     def _one_of_two_ways(self) -> ReceiverSettings:
-        even = self.spacing_m is not None and self.count is not None
-        if even == (self.positions_m is not None):
-            raise ValueError("give either spacing_m with count, or positions_m")
+        if (self.spacing_m is None) == (self.positions_m is None):
+            raise ValueError("give either spacing_m or positions_m")
         return self
 
 
 class ShotSettings(Section):
-    """Source position of one file that wins over its headers."""
+    """Where one shot was; what is left out the header says."""
 
     file: str
-    source_m: Finite
-    off_line_m: Finite = 0.0
-    elevation_m: Finite = 0.0
+    source_m: Finite | None = None
+    source_off_line_m: Finite | None = None
+    source_elevation_m: Finite | None = None
     delay_s: Finite | None = None
 
 
 class RecordSettings(Section):
-    """Which field files, and the geometry where the headers do not carry it."""
+    """Which field files, and the geometry where the headers do not carry it.
+
+    Positions given here win over the CSV tables named, those over shots.csv and receivers.csv beside the
+    records, and all of them over the headers.
+    """
 
     files: tuple[str, ...] = Field(min_length=1)
-    geometry_csv: str | None = None
+    geometry_tables: tuple[str, ...] = ()
     receivers: ReceiverSettings | None = None
     shots: tuple[ShotSettings, ...] = ()
     minimum_traces: Annotated[int, Field(ge=4)] = 8
@@ -67,6 +72,23 @@ class ConditioningSettings(Section):
     window_fastest_m_s: Positive | None = None
     slowest_wave_m_s: Positive = 50.0
 
+    @model_validator(mode="after")
+    def _ordered(self) -> ConditioningSettings:
+        for low, high in (self.band, self.window):
+            if low is not None and high is not None and not low < high:
+                raise ValueError(f"the lower limit must be below the upper one; got {low:g} and {high:g}")
+        return self
+
+    @property
+    def band(self) -> Limits:
+        """Lowest and highest frequency [Hz]; None for no limit on that side."""
+        return self.minimum_frequency_hz, self.maximum_frequency_hz
+
+    @property
+    def window(self) -> Limits:
+        """Slowest and fastest velocity of the surface-wave window [m/s]; None for no limit on that side."""
+        return self.window_slowest_m_s, self.window_fastest_m_s
+
 
 class ImageSettings(Section):
     """Scanned range; what is left out is chosen from the spread and the record."""
@@ -80,15 +102,29 @@ class ImageSettings(Section):
 class InversionSettings(Section):
     """Layering, the earth's other properties, and the draws around the best earths."""
 
-    layering_ratios: tuple[Annotated[float, Field(gt=1.0)], ...] | None = None
-    thicknesses_m: tuple[Positive, ...] | None = None
+    layering_ratios: tuple[Annotated[float, Field(gt=1.0, le=10.0)], ...] | None = None
+    layer_thicknesses_m: tuple[tuple[Positive, ...], ...] | None = None
     poisson_ratio: Annotated[float, Field(ge=0.0, lt=0.5)] | None = None
     water_table_depth_m: NonNegative | None = None
+    dry: bool = False
     saturated_vp_m_s: Positive | None = None
     density_kg_m3: Positive | None = None
     minimum_vs_m_s: Positive | None = None
     maximum_vs_m_s: Positive | None = None
-    seed: Annotated[int, Field(ge=0)] = 1
+    allow_decrease: bool = True
+    earths: Annotated[int, Field(ge=100, le=100_000)] = 600
+    seed: Annotated[int, Field(ge=0)] = 0
+
+    @model_validator(mode="after")
+    def _consistent(self) -> InversionSettings:
+        if self.dry and self.water_table_depth_m is not None:
+            raise ValueError("give either dry = true or water_table_depth_m")
+        low, high = self.minimum_vs_m_s, self.maximum_vs_m_s
+        if (low is None) != (high is None):
+            raise ValueError("give minimum_vs_m_s and maximum_vs_m_s together")
+        if low is not None and high is not None and not low < high:
+            raise ValueError(f"minimum_vs_m_s must be below maximum_vs_m_s; got {low:g} and {high:g}")
+        return self
 
 
 class SiteSettings(Section):

@@ -1,0 +1,5 @@
+"""`python -m surfdisp.cli` is `surfdisp`."""
+
+from .app import main
+
+main()
