@@ -23,8 +23,6 @@ LARGEST_SCATTER = 0.10
 """A bin whose shots scatter by more (relative standard deviation) is left out."""
 SINGLE_SHOT_SCATTER = 0.03
 """Relative scatter assumed where one shot cannot show any: 2 to 5 % is common practice."""
-NEAR_FIELD_ERROR = 0.05
-"""Relative standard deviation added where all shots of a bin are near-field picks."""
 
 
 class _ShotBin(NamedTuple):
@@ -48,10 +46,11 @@ def combine_picks(
     In each bin every shot counts once: the mean of its picks, weighted by their variance and moved along the
     local slope to the bin's centre. Its standard deviation is not divided by the root of their number, as
     neighbouring frequencies are not independent. Shots further than `outlier` robust standard deviations from
-    the median are rejected where there are three or more. The bin's velocity is the mean over the shots, its
-    variance the scatter between them (pooled with the two neighbouring bins; not divided by their number, as
-    near field and lateral change do not average out) plus the mean variance within. A bin needs half of all
-    shots; near-field picks count only where no shot is without.
+    the median are rejected where there are three or more. The bin's velocity is the mean over the shots weighted
+    by their variance (far shots count more where near ones are in their near field), its variance the scatter
+    between them (pooled with the two neighbouring bins; not divided by their number, as near field and lateral
+    change do not average out) plus the mean variance within. A bin needs half of all shots; picks flagged as
+    near field count only where no shot is without.
 
     Parameters
     ----------
@@ -87,7 +86,7 @@ def combine_picks(
             f"one shot only: scatter between shots is unknown, {100 * SINGLE_SHOT_SCATTER:.0f} % is assumed"
         )
     wave, kind, mode = kinds.pop()
-    velocity = np.exp([np.mean([s.log_velocity for s in shots]) for shots in bins.values()])
+    velocity = np.exp([_mean(shots) for shots in bins.values()])
     return DispersionCurve(
         frequency=2.0 ** (np.array(list(bins)) / per_octave),
         velocity=velocity,
@@ -195,11 +194,17 @@ def _relative_sigma(bins: dict[int, list[_ShotBin]]) -> FloatArray:
     for b, shots in bins.items():
         scatter = _scatter([bins[n] for n in (b - 1, b, b + 1) if n in bins])
         variance = np.square(SINGLE_SHOT_SCATTER if scatter is None else scatter)
-        variance += np.mean(np.square([s.sigma for s in shots]))
-        if all(NEAR_FIELD in s.flags for s in shots):
-            variance += NEAR_FIELD_ERROR**2
+        variance += 1.0 / np.mean(_weights(shots))
         sigma.append(max(float(np.sqrt(variance)), LEAST_SPREAD))
     return np.array(sigma)
+
+
+def _weights(shots: list[_ShotBin]) -> FloatArray:
+    return np.asarray(1.0 / np.square([max(s.sigma, LEAST_SPREAD) for s in shots]))
+
+
+def _mean(shots: list[_ShotBin]) -> float:
+    return float(np.average([s.log_velocity for s in shots], weights=_weights(shots)))
 
 
 def _scatter(groups: Sequence[list[_ShotBin]]) -> float | None:

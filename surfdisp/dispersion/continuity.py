@@ -24,6 +24,14 @@ SLOWNESS_RATIOS = (0.3, 5.0)
 """Plausible group slowness over phase slowness, between cells."""
 
 
+LARGEST_RISE = 0.04
+"""A branch ends where its velocity rises with frequency by more than this above its least so far.
+
+A fundamental mode over a soft layer may rise a little (4.7 % in Tokimatsu, Tamura & Kojima 1992, case 2); an
+apparent ridge that rises more has usually gone over to higher modes.
+"""
+
+
 def smooth_runs(frequency: FloatArray, velocity: FloatArray, lobe: float) -> list[NDArray[np.int64]]:
     """Split picks (increasing frequency, all finite) into runs that are each one smooth branch.
 
@@ -45,7 +53,13 @@ def smooth_runs(frequency: FloatArray, velocity: FloatArray, lobe: float) -> lis
     members = np.split(np.arange(len(cell)), np.flatnonzero(np.diff(cell)) + 1)
     f = np.array([np.median(frequency[m]) for m in members])
     k = np.array([np.median(frequency[m] / velocity[m]) for m in members])
-    cuts = [i for i in range(1, len(members)) if _breaks(f, k, i, lobe)]
+    cuts = []
+    slowest = np.inf
+    for i in range(len(members)):
+        if i > 0 and (_breaks(f, k, i, lobe) or f[i] / k[i] > (1.0 + LARGEST_RISE) * slowest):
+            cuts.append(i)
+            slowest = np.inf
+        slowest = min(slowest, f[i] / k[i])
     return [np.concatenate(members[a:b]) for a, b in zip([0, *cuts], [*cuts, len(members)], strict=True)]
 
 

@@ -75,7 +75,9 @@ def pick(
     Returns
     -------
     Picks
-        None accepted where there is nothing to pick.
+        None accepted where there is nothing to pick. `sigma` is the error of the peak's location, from its
+        curvature and from how far its power falls short of one, and the error of the near field
+        (`limits.NEAR_FIELD_ERROR`), in quadrature.
     """
     if image.aperture <= 0.0:
         raise InputError(
@@ -223,13 +225,14 @@ def _flags(image: DispersionImage, peaks: list[Peak], near_field: float) -> NDAr
 
 
 def _sigma(image: DispersionImage, peaks: list[Peak]) -> FloatArray:
-    """Standard deviation of each velocity: sigma_c = c2 / omega sigma_k."""
+    """Standard deviation of each velocity: location, sigma_c = c2 / omega sigma_k, and near field."""
     traces = len(image.offsets) * image.shots
-    values = [
-        p.velocity**2 / (2.0 * np.pi * f) * wavenumber_sigma(p.power, p.curvature, traces)
-        for f, p in zip(image.frequencies, peaks, strict=True)
-    ]
-    return np.asarray(values)
+    omega = 2.0 * np.pi * image.frequencies
+    velocity = np.array([p.velocity for p in peaks])
+    wavenumber = np.array([wavenumber_sigma(p.power, p.curvature, traces) for p in peaks])
+    distance = limits.centre_distance_in_wavelengths(image, velocity / image.frequencies)
+    near = velocity * limits.near_field_error(distance)
+    return np.asarray(np.hypot(np.square(velocity) / omega * wavenumber, near))
 
 
 def _nothing(image: DispersionImage) -> Picks:

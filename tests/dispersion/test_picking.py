@@ -92,6 +92,17 @@ def test_near_field_is_flagged_by_the_array_centres_distance_in_wavelengths(make
     assert p.TOO_NEAR in strict.reason
 
 
+def test_sigma_holds_the_published_near_field_bias_as_two_standard_deviations(make_wave):
+    # Yoon & Rix (2009) [M, checks.md C]: bias up to 10 to 15 % at 1, up to 5 % at 2 array-centre wavelengths
+    picks = pick(dispersion_image(make_wave(200.0, LINE, -10.0)))
+    distance = (10.0 + LINE.mean()) / picks.wavelength
+    relative = 2.0 * picks.sigma / picks.velocity
+    at_1, at_2 = (np.interp(d, distance[picks.accepted], relative[picks.accepted]) for d in (1.0, 2.0))
+    assert 0.10 <= at_1 <= 0.15
+    assert 0.03 <= at_2 <= 0.05
+    assert relative[picks.accepted][-1] < 0.01
+
+
 def test_wavelengths_beyond_the_spread_are_refused(make_wave):
     image = dispersion_image(make_wave(300.0, LINE, -60.0))
     picks = pick(image, longest_wavelength=1.0)
