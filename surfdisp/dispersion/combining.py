@@ -46,11 +46,11 @@ def combine_picks(
     In each bin every shot counts once: the mean of its picks, weighted by their variance and moved along the
     local slope to the bin's centre. Its standard deviation is not divided by the root of their number, as
     neighbouring frequencies are not independent. Shots further than `outlier` robust standard deviations from
-    the median are rejected where there are three or more. The bin's velocity is the mean over the shots weighted
-    by their variance (far shots count more where near ones are in their near field), its variance the scatter
-    between them (pooled with the two neighbouring bins; not divided by their number, as near field and lateral
-    change do not average out) plus the mean variance within. A bin needs half of all shots; picks flagged as
-    near field count only where no shot is without.
+    the median are rejected where there are three or more. The bin's velocity is the mean over the shots,
+    weighted by their variance: far shots count more where near ones are in their near field. Its variance is
+    the scatter between them (pooled with the two neighbouring bins; not divided by their number, as lateral
+    change and near field do not average out) plus the mean variance within. A bin needs half of all shots;
+    picks flagged as near field count only where no shot is without.
 
     Parameters
     ----------

@@ -12,7 +12,16 @@ NEAR_FIELD = 1.0
 """Array-centre distance in wavelengths below which a pick is flagged (Yoon & Rix 2009: bias to 15 %)."""
 TOO_NEAR = 0.5
 """... and below which it is refused."""
-NEAR_FIELD_ERROR = {0.5: 0.07, 1.0: 0.06, 1.5: 0.055, 2.0: 0.024, 2.5: 0.015, 3.0: 0.008, 4.0: 0.005, 6.0: 0.0}
+NEAR_FIELD_ERROR = {
+    0.5: 0.07,
+    1.0: 0.06,
+    1.5: 0.055,
+    2.0: 0.024,
+    2.5: 0.015,
+    3.0: 0.008,
+    4.0: 0.005,
+    6.0: 0.0,
+}
 """Relative standard deviation for the near field, at array-centre distances in wavelengths.
 
 Yoon & Rix (2009) state a bias of up to 10 to 15 % at 1 and up to 5 % at 2, taken as two standard deviations.

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 from ..core import DispersionImage, InputError, Picks
 from ..core.checks import FloatArray, positive
 from . import limits
-from .continuity import smooth_runs
+from .continuity import smooth_runs, steep_below
 from .location import NO_PEAK, Peak, locate, wavenumber_sigma
 from .tracking import Ridge, noise_threshold, ridges
 
@@ -23,12 +23,17 @@ TOO_NEAR = "near field, too close to be used"
 AMBIGUOUS = "may be an alias"
 OTHER_BRANCH = "beyond a gap or jump of the ridge"
 NEAR_FIELD = "near field"
+STEEP = "steep, may be another mode"
 BEYOND_HALF_SPACING = "beyond half the spacing's wavenumber"
 
 MINIMUM_STRENGTH = 0.12
 """Least sum of (power - threshold) d ln f of a ridge; pure noise stays below 0.02."""
 MINIMUM_SIGNAL = 1.5
 """Least signal-to-noise ratio of the record, where it is known."""
+STEEP_WAVELENGTH = 0.5
+"""Wavelength in spread lengths beyond which a steep ridge is flagged."""
+STEEP_ERROR = 0.2
+"""Relative standard deviation of such picks, times the wavelength in spread lengths."""
 WINDOW = 0.15
 """Relative distance from the ridge within which a peak belongs to it."""
 
@@ -54,9 +59,10 @@ def pick(
     The ridge is followed over the whole image (see `tracking`); where two ridges run side by side the slower
     one is taken. Around it every frequency is located by a parabola. A frequency is refused, with its
     reason, where the peak is not above the noise, the wavelength is too long for the spread or the source
-    too near, or an alias cannot be told from the ridge. Accepted picks carry flags: near field, or beyond
-    the wavenumber 1 / (2 spacing), where they are valid because the ridge reaches there continuously from
-    below or no alias lies within the scanned velocities.
+    too near, or an alias cannot be told from the ridge. Accepted picks carry flags: near field; steep at long
+    wavelengths, where the ridge may have left for a higher mode; or beyond the wavenumber 1 / (2 spacing),
+    where they are valid because the ridge reaches there continuously from below or no alias lies within the
+    scanned velocities.
 
     Parameters
     ----------
@@ -76,8 +82,8 @@ def pick(
     -------
     Picks
         None accepted where there is nothing to pick. `sigma` is the error of the peak's location, from its
-        curvature and from how far its power falls short of one, and the error of the near field
-        (`limits.NEAR_FIELD_ERROR`), in quadrature.
+        curvature and from how far its power falls short of one, the error of the near field
+        (`limits.NEAR_FIELD_ERROR`), and that of a steep ridge at long wavelengths, in quadrature.
     """
     if image.aperture <= 0.0:
         raise InputError(
@@ -92,11 +98,12 @@ def pick(
     _keep_one_branch(image, peaks, reason)
     _refuse_ambiguous(image, peaks, reason)
     accepted = np.array([r == "" for r in reason])
-    flags = _flags(image, peaks, near_field)
+    steep = _steep(image, peaks, accepted)
+    flags = _flags(image, peaks, near_field, steep)
     return Picks(
         frequency=image.frequencies,
         velocity=np.array([p.velocity for p in peaks]),
-        sigma=_sigma(image, peaks),
+        sigma=_sigma(image, peaks, steep),
         half_width=np.array([p.half_width for p in peaks]),
         accepted=accepted,
         reason=np.where(accepted, flags, reason),
@@ -193,11 +200,12 @@ def _keep_one_branch(image: DispersionImage, peaks: list[Peak], reason: NDArray[
     """Keep the strongest run of accepted picks that is one smooth branch, refuse the others."""
     good = np.flatnonzero(reason == "")
     velocity = np.array([peaks[i].velocity for i in good])
+    power = np.array([peaks[i].power for i in good])
     lobe = 1.0 / (image.aperture + image.spacing)
-    runs = smooth_runs(image.frequencies[good], velocity, lobe)
+    runs = smooth_runs(image.frequencies[good], velocity, power, lobe)
     if len(runs) < 2:
         return
-    weight = np.array([peaks[i].power for i in good]) * np.gradient(np.log(image.frequencies))[good]
+    weight = power * np.gradient(np.log(image.frequencies))[good]
     best = max(range(len(runs)), key=lambda r: float(weight[runs[r]].sum()))
     for r, run in enumerate(runs):
         if r != best:
@@ -216,23 +224,34 @@ def _refuse_ambiguous(image: DispersionImage, peaks: list[Peak], reason: NDArray
         reason[good & beyond & visible] = AMBIGUOUS
 
 
-def _flags(image: DispersionImage, peaks: list[Peak], near_field: float) -> NDArray[np.str_]:
+def _steep(image: DispersionImage, peaks: list[Peak], accepted: NDArray[np.bool_]) -> NDArray[np.bool_]:
+    velocity = np.array([p.velocity for p in peaks])
+    f = image.frequencies
+    below = steep_below(f[accepted], velocity[accepted], STEEP_WAVELENGTH * image.aperture)
+    return np.asarray(f <= below)
+
+
+def _flags(
+    image: DispersionImage, peaks: list[Peak], near_field: float, steep: NDArray[np.bool_]
+) -> list[str]:
     wavelength = np.array([p.velocity for p in peaks]) / image.frequencies
     near = limits.centre_distance_in_wavelengths(image, wavelength) < near_field
     beyond = limits.beyond_half_spacing(image, wavelength)
-    named = [(near, NEAR_FIELD), (beyond, BEYOND_HALF_SPACING)]
-    return np.array(["; ".join(text for where, text in named if where[i]) for i in range(len(peaks))])
+    named = [(near, NEAR_FIELD), (steep & np.isfinite(wavelength), STEEP), (beyond, BEYOND_HALF_SPACING)]
+    return ["; ".join(text for where, text in named if where[i]) for i in range(len(peaks))]
 
 
-def _sigma(image: DispersionImage, peaks: list[Peak]) -> FloatArray:
-    """Standard deviation of each velocity: location, sigma_c = c2 / omega sigma_k, and near field."""
+def _sigma(image: DispersionImage, peaks: list[Peak], steep: NDArray[np.bool_]) -> FloatArray:
+    """Standard deviation of each velocity: location, sigma_c = c2 / omega sigma_k, near field, other mode."""
     traces = len(image.offsets) * image.shots
     omega = 2.0 * np.pi * image.frequencies
     velocity = np.array([p.velocity for p in peaks])
+    wavelength = velocity / image.frequencies
     wavenumber = np.array([wavenumber_sigma(p.power, p.curvature, traces) for p in peaks])
-    distance = limits.centre_distance_in_wavelengths(image, velocity / image.frequencies)
-    near = velocity * limits.near_field_error(distance)
-    return np.asarray(np.hypot(np.square(velocity) / omega * wavenumber, near))
+    near = limits.near_field_error(limits.centre_distance_in_wavelengths(image, wavelength))
+    other = np.where(steep, STEEP_ERROR * wavelength / image.aperture, 0.0)
+    relative = np.sqrt(np.square(velocity / omega * wavenumber) + np.square(near) + np.square(other))
+    return np.asarray(velocity * relative)
 
 
 def _nothing(image: DispersionImage) -> Picks:

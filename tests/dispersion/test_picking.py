@@ -178,6 +178,20 @@ def test_slower_of_two_long_ridges_is_the_fundamental(make_waves):
     assert np.median(np.abs(errors(picks, slow))) < 0.02
 
 
+def test_steep_ridge_at_long_wavelengths_is_flagged_and_less_certain(make_wave):
+    # modes closer than the array's resolution: the ridge leaves on a steep path (here: the path alone)
+    def leaving(f):
+        return 180.0 + 700.0 / (1.0 + np.power(f / 17.0, 6.0))
+
+    picks = pick(dispersion_image(make_wave(leaving, LINE, -20.0)))
+    steep = np.array([p.STEEP in reason for reason in picks.reason]) & picks.accepted
+    assert steep.any()
+    assert np.all(picks.wavelength[steep] > 0.4 * 46.0)
+    assert np.all((picks.sigma / picks.velocity)[steep] > 0.2 * picks.wavelength[steep] / 46.0 - 1e-9)
+    gentle = pick(dispersion_image(make_wave(soft_over_stiff, LINE, -20.0)))
+    assert not any(p.STEEP in reason for reason in gentle.reason)
+
+
 def test_guide_is_followed_in_place_of_the_strongest_ridge(make_waves):
     def amplitude(f):
         return np.exp(-np.square((f - 35.0) / 22.0))
