@@ -9,7 +9,7 @@ layer are joined by the symmetric matrix ::
 
 Symbols: X = k h; e_p = (c/vp)^2 and e_s = (c/vs)^2 with c = omega/k; r^2 = 1 - e_p, s^2 = 1 - e_s, both of
 either sign; A = r X, B = s X; C = cosh and S = sinh(.)/(.), entire functions of A^2 or B^2. All elements are
-numerators over one denominator D; both carry the factor exp(-Re(A + B)), so that nothing overflows.
+numerators over one denominator D; both are scaled by decaying exponentials, so that nothing overflows.
 
 The textbook form of D and of the numerators cancels where the layer is thin (X small) or stiff (c much below
 vs). There they are rebuilt from differences that are taken analytically, with P = (A+B)/2, M = (A-B)/2:
@@ -30,26 +30,33 @@ from .jit import inlined, kernel
 THIN = 0.5  # |A^2| and |B^2| below which the power series are summed
 STIFF = 0.5  # (c/vs)^2 below which the closed differences are used
 TERMS = 9  # of each power series; the first one left out is below 1e-17 at THIN
+FEW_TERMS = 6  # the same where |A^2| and |B^2| are below 0.05
+COSINE = tuple(1.0 / math.factorial(2 * n) for n in range(TERMS + 2))
+SINE = tuple(1.0 / math.factorial(2 * n + 1) for n in range(TERMS + 2))
+SMALL = 0.3  # |x| below which cosh x and sinh x are summed as power series
+EXP_SMALL = math.exp(SMALL)
+EXP_MINUS_SMALL = math.exp(-SMALL)
 
 
 @inlined
 def even_functions(square: float) -> tuple[float, float, float]:
-    """Return cosh(x) and sinh(x)/x, both times exp(-x), and exp(-x) itself; x^2 may have either sign.
+    """Return cosh(x) and sinh(x)/x, both times a decay, and the decay itself; x^2 may have either sign.
 
-    Where x^2 < 0 these are cos|x|, sin|x|/|x| and 1.
+    The decay is exp(SMALL - x) where x > SMALL, and 1 elsewhere. Where x^2 < 0 the functions are cos|x| and
+    sin|x|/|x|.
     """
-    if square > 0.1:
+    if square > SMALL * SMALL:
         x = math.sqrt(square)
-        decay = math.exp(-x)
-        return 0.5 + 0.5 * decay * decay, (0.5 - 0.5 * decay * decay) / x, decay
-    if square < -0.1:
+        decay = math.exp(SMALL - x)
+        falling = 0.5 * EXP_MINUS_SMALL * decay * decay
+        return 0.5 * EXP_SMALL + falling, (0.5 * EXP_SMALL - falling) / x, decay
+    if square < -SMALL * SMALL:
         x = math.sqrt(-square)
         return math.cos(x), math.sin(x) / x, 1.0
     q = square
     even = 1.0 + q / 2.0 * (1.0 + q / 12.0 * (1.0 + q / 30.0 * (1.0 + q / 56.0 * (1.0 + q / 90.0))))
     odd = 1.0 + q / 6.0 * (1.0 + q / 20.0 * (1.0 + q / 42.0 * (1.0 + q / 72.0 * (1.0 + q / 110.0))))
-    decay = math.exp(-math.sqrt(max(q, 0.0)))
-    return even * decay, odd * decay, decay
+    return even, odd, 1.0
 
 
 @kernel
@@ -161,18 +168,19 @@ def _thin(X: float, e_p: float, e_s: float) -> tuple[float, float, float, float,
     Q = H = C_ab = S_ab = 0.0
     h0, h1 = 0.0, 1.0  # polynomials in (P^2, M^2)
     g0, g1 = 0.0, 1.0  # polynomials in (a, b)
-    cosine, sine, power = 1.0, 1.0, 1.0  # 1/(2n)!, 1/(2n+1)! and 4^n
+    sine, power = 1.0, 1.0  # 1/(2n+1)! and 4^n
     Ea = Eb = Sa = Sb = 0.0  # 2 (C - 1) / a and S
     an = bn = 1.0
-    for n in range(1, TERMS + 1):
+    terms = TERMS if max(abs(a), abs(b)) > 0.05 else FEW_TERMS
+    for n in range(1, terms + 1):
         Sa += sine * an
         Sb += sine * bn
-        cosine = sine / (2 * n)
-        sine = cosine / (2 * n + 1)
+        cosine = COSINE[n]
+        sine = SINE[n]
         power *= 4.0
         Ea += 2.0 * cosine * an
         Eb += 2.0 * cosine * bn
-        Q += 2.0 * power * sine / (2 * n + 2) * h1
+        Q += 2.0 * power * COSINE[n + 1] * h1
         H += power * sine * h1
         C_ab += cosine * g1
         S_ab += sine * g1

@@ -36,7 +36,8 @@ MARGIN = 1e-10  # relative distance at which a root is certified by counts on ei
 TOP = 1e-9  # relative distance below the half-space shear velocity up to which modes are sought
 PHASE_STEP = 0.8  # largest change of vertical phase from one velocity of a scan to the next [rad]
 VELOCITY_STEP = 0.08  # largest relative change of velocity in a scan
-CLOSE = 1.3  # ratio of neighbouring frequencies up to which a root may be pursued
+NEARBY = 1e-7  # relative step of difference quotients
+CLOSE = 1.5  # ratio of neighbouring frequencies up to which a root may be pursued
 EXPECTED = 0.03  # relative distance from the extrapolated velocity within which a pursued root may lie
 
 
@@ -82,39 +83,47 @@ def next_velocity(omega: float, velocity: float, top: float, thickness: Array, v
     return ahead
 
 
+@inlined
+def value_and_slope(omega: float, velocity: float, step: float, table: Array) -> tuple[float, float]:
+    """Return the secular function and its one-sided difference quotient."""
+    value = rayleigh_secular(omega, velocity, table)
+    return value, (rayleigh_secular(omega, velocity + step, table) - value) / step
+
+
 @kernel
 def hidden_crossing(
-    omega: float, low: float, high: float, mode: int, model: tuple[Array, Array, Array, Array], table: Array
+    omega: float,
+    low: float,
+    high: float,
+    left: tuple[float, float],
+    right: tuple[float, float],
+    mode: int,
+    model: tuple[Array, Array, Array, Array],
+    table: Array,
 ) -> float:
     """Return a velocity between `low` and `high` where the count exceeds `mode`, or NaN.
 
-    The counts at both ends are equal to `mode`. The secular function is followed down its slopes to where it
-    changes sign, or to its extremum.
+    The counts at both ends equal `mode`; `left` and `right` are values and slopes of the secular function
+    there. Where both slopes fall towards the middle, the dip is followed to a change of sign or to its
+    bottom.
     """
-    tiny = 1e-6
     for _ in range(60):
         width = high - low
-        if width <= 1e-9 * low:
-            break
-        left = rayleigh_secular(omega, low, table)
-        right = rayleigh_secular(omega, high, table)
-        left_slope = (rayleigh_secular(omega, low + tiny * width, table) - left) / (tiny * width)
-        right_slope = (right - rayleigh_secular(omega, high - tiny * width, table)) / (tiny * width)
-        if left * left_slope >= 0.0 or right * right_slope <= 0.0:
+        falling = left[0] * left[1] < 0.0 and right[0] * right[1] > 0.0
+        if not falling or width <= 1e-9 * low:
             break
         # where the two tangents meet, kept inside
-        middle = (right - left + left_slope * low - right_slope * high) / (left_slope - right_slope)
+        middle = (right[0] - left[0] + left[1] * low - right[1] * high) / (left[1] - right[1])
         middle = min(max(middle, low + 0.1 * width), high - 0.1 * width)
-        value = rayleigh_secular(omega, middle, table)
-        if value * left <= 0.0:
+        here = value_and_slope(omega, middle, NEARBY * width, table)
+        if here[0] * left[0] <= 0.0:
             if rayleigh_count(omega, middle, *model) > mode:
                 return middle
             break
-        slope = (rayleigh_secular(omega, middle + tiny * width, table) - value) / (tiny * width)
-        if slope * value < 0.0:
-            low = middle
+        if here[0] * here[1] < 0.0:
+            low, left = middle, here
         else:
-            high = middle
+            high, right = middle, here
     return math.nan
 
 
@@ -201,11 +210,13 @@ def scanned(
     low_count = rayleigh_count(omega, low, *model)
     if low_count > mode:
         return math.nan
+    left = value_and_slope(omega, low, NEARBY * low, table)
     while low < top:
         high = next_velocity(omega, low, top, thickness, vp, vs)
         high_count = rayleigh_count(omega, high, *model)
         if high_count > mode:
             return refined(omega, low, high, mode, model, table)
+        right = value_and_slope(omega, high, -NEARBY * high, table)
         if high_count == mode:
             start = low
             while low_count != mode and high - start > 0.1 * (high - low):  # where the count reached `mode`
@@ -215,56 +226,57 @@ def scanned(
                     return refined(omega, start, middle, mode, model, table)
                 start, low_count = middle, count
             if low_count == mode:
-                crossing = hidden_crossing(omega, start, high, mode, model, table)
+                if start > low:
+                    left = value_and_slope(omega, start, NEARBY * start, table)
+                crossing = hidden_crossing(omega, start, high, left, right, mode, model, table)
                 if crossing == crossing:
                     return refined(omega, start, crossing, mode, model, table)
-        low, low_count = high, high_count
+        low, low_count, left = high, high_count, right
     return math.nan
 
 
 @kernel
 def pursued(
-    omega: float, guess: float, spread: float, mode: int, low: float, high: float, table: Array
+    omega: float, guess: float, spread: float, slope: float, low: float, high: float, table: Array
 ) -> tuple[float, float]:
-    """Return a zero of the secular function near `guess`, and a velocity just above it whose sign is
-    opposite.
+    """Return a zero of the secular function near `guess`, and its slope there.
 
-    Secant, then inverse quadratic steps. Both are NaN where the steps leave (low, high) or do not settle; the
-    second alone is NaN where no step went beyond the root.
+    One step by the expected `slope` (by the relative distance `spread` where it is NaN), then secant and
+    inverse quadratic steps. NaN where a step leaves (low, high) or they do not settle.
     """
-    sign = 1.0 if mode % 2 == 0 else -1.0  # of the secular function below the root
-    above = math.nan
     a = guess
     if not low < a < high:
         return math.nan, math.nan
-    fa = sign * rayleigh_secular(omega, a, table)
-    if fa < 0.0:
-        above = a
-    b = a * (1.0 + spread) if fa > 0.0 else a * (1.0 - spread)
+    fa = rayleigh_secular(omega, a, table)
+    step = spread * guess
+    if slope == slope:
+        step = min(max(-fa / slope, -EXPECTED * guess), EXPECTED * guess)
+        if abs(step) < 1e-9 * guess:
+            step = 1e-9 * guess
+    b = a + step
     c = fc = 0.0
-    for step in range(9):
+    for i in range(9):
         if not low < b < high:
-            return math.nan, math.nan
-        fb = sign * rayleigh_secular(omega, b, table)
-        if fb < 0.0 and not above < b:
-            above = b
+            break
+        fb = rayleigh_secular(omega, b, table)
         if fb == fa:
-            return math.nan, math.nan
-        secant = b - fb * (b - a) / (fb - fa)
-        x = secant
-        if step > 0:
+            break
+        slope = (fb - fa) / (b - a)
+        x = b - fb / slope
+        if i > 0:
             if fc in (fa, fb):
-                return math.nan, math.nan
+                break
+            secant = x
             x = (
                 a * fb * fc / ((fa - fb) * (fa - fc))
                 + b * fa * fc / ((fb - fa) * (fb - fc))
                 + c * fa * fb / ((fc - fa) * (fc - fb))
             )
-            correction = abs(x - secant)
             # the error of the secant step is K (x-a)(x-b), that of the quadratic one K^2 (x-a)(x-b)(x-c)
-            curvature = correction / abs((x - a) * (x - b))
-            if correction * curvature * abs(x - c) <= 2e-12 * x:
-                return x, above
+            correction = abs(x - secant)
+            error = correction * correction * abs((x - c) / ((x - a) * (x - b)))
+            if error <= 2e-12 * x:
+                return x, slope
         c, fc = a, fa
         a, fa = b, fb
         b = x
@@ -277,11 +289,11 @@ def extrapolated(x: float, xs: Array, ys: Array, n: int) -> tuple[float, float]:
     work = np.empty(4)
     for i in range(n):
         work[i] = ys[i]
-    change = 0.0
+    estimate = ys[0]
     for m in range(1, n):
         for i in range(n - m):
             work[i] = ((x - xs[i + m]) * work[i] + (xs[i] - x) * work[i + 1]) / (xs[i] - xs[i + m])
-        change = work[0]
+        estimate = work[0]
     previous = ys[0]
     if n > 2:  # the polynomial through all but the oldest
         for i in range(n - 1):
@@ -290,7 +302,7 @@ def extrapolated(x: float, xs: Array, ys: Array, n: int) -> tuple[float, float]:
             for i in range(n - 1 - m):
                 work[i] = ((x - xs[i + m]) * work[i] + (xs[i] - x) * work[i + 1]) / (xs[i] - xs[i + m])
         previous = work[0]
-    return change, abs(change - previous)
+    return estimate, abs(estimate - previous)
 
 
 @kernel
@@ -309,35 +321,44 @@ def slowest_velocities(
     model = (thickness, vp, vs, density)
     table = secular_table(thickness, vp, vs, density)
     top = vs[-1] * (1.0 - TOP)
-    velocities = np.full(omega.size, math.nan)
     slowest = velocity_floor(vp, vs, density)
+    sign = 1.0 if mode % 2 == 0 else -1.0  # of the secular function below a root of the branch
+    velocities = np.full(omega.size, math.nan)
     cleared = math.inf  # wavenumber above which the branch is known to lie above the frequency at hand
     logs = np.zeros(4)  # the latest roots, newest first
     roots = np.zeros(4)
     known = 0
+    slope = last_slope = math.nan  # of the secular function at the latest two roots
     for i in range(omega.size):
         w = omega[i]
-        low = max(slowest, w / cleared)
         log_w = math.log(w)
+        low = max(slowest, w / cleared)
         velocity = math.nan
-        if known > 0 and logs[0] == log_w:
-            velocities[i] = velocities[i - 1]
-            continue
-        if known > 1 and logs[0] - log_w < math.log(CLOSE):
+        new_slope = math.nan
+        if known > 0 and logs[0] - log_w < math.log(CLOSE):
+            if logs[0] == log_w:
+                velocities[i] = roots[0]
+                continue
             guess, spread = extrapolated(log_w, logs, roots, known)
-            spread = min(max(1.5 * spread / guess, 1e-7), 0.02)
-            root, above = pursued(w, guess, spread, mode, low, top, table)
-            if abs(root - guess) < EXPECTED * guess and root * (1.0 - MARGIN) > low:
-                below = root * (1.0 - MARGIN)
-                if rayleigh_count(w, below, *model) == mode and (
-                    (mode == 0 and above > root)
-                    or rayleigh_count(w, root * (1.0 + MARGIN), *model) == mode + 1
-                ):
-                    velocity = root
+            spread = min(max(1.5 * spread / guess, 1e-7), 0.01)
+            root, found_slope = pursued(w, guess, spread, slope * slope / last_slope, low, top, table)
+            below = root * (1.0 - MARGIN)
+            if (
+                abs(root - guess) < EXPECTED * guess
+                and below > low
+                and sign * found_slope < 0.0
+                and rayleigh_count(w, below, *model) == mode
+                and (mode == 0 or rayleigh_count(w, root * (1.0 + MARGIN), *model) == mode + 1)
+            ):
+                velocity = root
+                new_slope = found_slope
         if velocity != velocity and low < top:
             velocity = scanned(w, low, top, mode, model, table)
-        velocities[i] = velocity
+        last_slope, slope = slope, new_slope
+        if last_slope != last_slope:
+            last_slope = slope
         if velocity == velocity:
+            velocities[i] = velocity
             cleared = w / velocity
             known = min(known + 1, 4)
             for q in range(known - 1, 0, -1):

@@ -6,9 +6,10 @@ layer by the hyperbolic functions of its vertical phases and across each interfa
 
     eps = rho_below / rho_above,   eta = 2 (g_above - eps g_below),   g = (vs / c)^2
 
-and joined to the two decaying waves of the half-space. All steps are scaled by positive factors only (the
-decaying exponentials, and now and then the size of the vector), so that the sign is that of the exact
-function.
+and joined to the two decaying waves of the half-space. All steps are scaled by positive factors only,
+so that the sign is that of the exact function: by the decaying exponentials, which are smooth in c, and by
+the size of the vector only where it would otherwise leave the range of numbers. (Scaled at every step the
+function would look like a mere sign near the modes of shallow layers, where the vector itself passes zero.)
 """
 
 from __future__ import annotations
@@ -24,6 +25,7 @@ from .layer_stiffness import even_functions
 Array = NDArray[np.float64]
 
 THICKNESS, P_SLOWNESS, S_SLOWNESS, CONTRAST, STEP = range(5)  # columns of the table
+FAR = 1e100  # size beyond which the vector is scaled
 
 
 @kernel
@@ -88,12 +90,14 @@ def rayleigh_secular(omega: float, velocity: float, table: Array) -> float:
         x4 = eps * q4
         x5 = b * z2 - eta * z1
         if i & 7 == 7:
-            size = 1.0 / (abs(x1) + abs(x2) + abs(x3) + abs(x4) + abs(x5))
-            x1 *= size
-            x2 *= size
-            x3 *= size
-            x4 *= size
-            x5 *= size
+            size = abs(x1) + abs(x2) + abs(x3) + abs(x4) + abs(x5)
+            if not 1.0 / FAR < size < FAR:
+                size = 1.0 / size
+                x1 *= size
+                x2 *= size
+                x3 *= size
+                x4 *= size
+                x5 *= size
     r = math.sqrt(1.0 - cc * table[last, P_SLOWNESS])
     s = math.sqrt(1.0 - cc * table[last, S_SLOWNESS])
     value: float = x2 + s * x3 - r * (x4 + s * x5)
