@@ -165,7 +165,7 @@ def _model(earth: LayeredEarth) -> tuple[FloatArray, FloatArray, FloatArray, Flo
 def _descending(frequency: ArrayLike) -> tuple[FloatArray, NDArray[np.intp]]:
     """Return angular frequencies from high to low, and the places they came from."""
     omega = 2.0 * np.pi * _positive_array(frequency, "frequency")
-    order = np.argsort(-omega, kind="stable")
+    order = omega.argsort()[::-1]
     return omega[order], order
 
 
@@ -176,8 +176,9 @@ def _positive_array(values: ArrayLike, name: str) -> FloatArray:
         raise InputError(f"{name} must be numbers; got {values!r:.80}") from error
     if array.ndim != 1:
         raise InputError(f"{name} must have one axis; got shape {array.shape}")
-    all_positive(array, name)
-    all_finite(array, name)
+    if array.size and not (array.min() > 0.0 and array.max() < np.inf):  # the whole at once: it is quick
+        all_positive(array, name)
+        all_finite(array, name)
     return array
 
 

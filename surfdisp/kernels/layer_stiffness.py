@@ -54,8 +54,12 @@ def even_functions(square: float) -> tuple[float, float, float]:
         x = math.sqrt(-square)
         return math.cos(x), math.sin(x) / x, 1.0
     q = square
-    even = 1.0 + q / 2.0 * (1.0 + q / 12.0 * (1.0 + q / 30.0 * (1.0 + q / 56.0 * (1.0 + q / 90.0))))
-    odd = 1.0 + q / 6.0 * (1.0 + q / 20.0 * (1.0 + q / 42.0 * (1.0 + q / 72.0 * (1.0 + q / 110.0))))
+    even = 1.0 + q / 2.0 * (
+        1.0 + q / 12.0 * (1.0 + q / 30.0 * (1.0 + q / 56.0 * (1.0 + q / 90.0 * (1.0 + q / 132.0))))
+    )
+    odd = 1.0 + q / 6.0 * (
+        1.0 + q / 20.0 * (1.0 + q / 42.0 * (1.0 + q / 72.0 * (1.0 + q / 110.0 * (1.0 + q / 156.0))))
+    )
     return even, odd, 1.0
 
 
@@ -121,36 +125,35 @@ def _stiff(X: float, e_p: float, e_s: float) -> tuple[float, float, float, float
     r_minus_s = (e_s - e_p) / (r + s)
     P = 0.5 * (r + s) * X
     M = 0.5 * r_minus_s * X
-    p = math.exp(-P)
-    m = math.exp(-M)
-    pp = p * p
-    ea = p * m
-    eb = p / m
+    ea = math.exp(-r * X)
+    eb = math.exp(-s * X)
+    pp = ea * eb  # exp(-2 P), the factor of all elements
     ca = 0.5 + 0.5 * ea * ea
     cb = 0.5 + 0.5 * eb * eb
     sa = (0.5 - 0.5 * ea * ea) / r
     sb = (0.5 - 0.5 * eb * eb) / s
-    ch_m = 0.5 * (1.0 / m + m)
+    ch_m = 0.5 * (eb + ea)  # cosh M exp(-P)
     if M < 0.5:
         q = M * M
         sh_m = M * (
             1.0 + q / 6.0 * (1.0 + q / 20.0 * (1.0 + q / 42.0 * (1.0 + q / 72.0 * (1.0 + q / 110.0))))
         )
+        sh_m *= math.sqrt(pp)
     else:
-        sh_m = 0.5 * (1.0 / m - m)
+        sh_m = 0.5 * (eb - ea)
     sasb = sa * sb
-    D = (e_p * e_s + r_minus_s * r_minus_s) * sasb - 4.0 * sh_m * sh_m * pp
+    D = (e_p * e_s + r_minus_s * r_minus_s) * sasb - 4.0 * sh_m * sh_m
     # C_A S_B - C_B S_A and S_A - S_B
-    t = (0.5 * M * (1.0 - pp * pp) - 2.0 * P * sh_m * ch_m * pp) / (X * rs)
-    v = (P * (1.0 + pp) * sh_m - M * (1.0 - pp) * ch_m) * p / (X * rs)
+    t = (0.5 * M * (1.0 - pp * pp) - 2.0 * P * sh_m * ch_m) / (X * rs)
+    v = (P * (1.0 + pp) * sh_m - M * (1.0 - pp) * ch_m) / (X * rs)
     one_minus_rs = (e_p + e_s - e_p * e_s) / (1.0 + rs)
     return (
         D,
         e_p * cb * sa + t,
-        -2.0 * sh_m * sh_m * pp - one_minus_rs * rs * sasb,
+        -2.0 * sh_m * sh_m - one_minus_rs * rs * sasb,
         e_s * ca * sb - t,
         v - e_p * sa * eb,
-        (1.0 - pp) * sh_m * p,
+        (1.0 - pp) * sh_m,
         -v - e_s * sb * ea,
     )
 

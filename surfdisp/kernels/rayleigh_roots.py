@@ -35,7 +35,7 @@ Array = NDArray[np.float64]
 MARGIN = 1e-10  # relative distance at which a root is certified by counts on either side
 TOP = 1e-9  # relative distance below the half-space shear velocity up to which modes are sought
 PHASE_STEP = 0.8  # largest change of vertical phase from one velocity of a scan to the next [rad]
-VELOCITY_STEP = 0.08  # largest relative change of velocity in a scan
+VELOCITY_STEP = 0.1  # largest relative change of velocity in a scan
 NEARBY = 1e-7  # relative step of difference quotients
 CLOSE = 1.5  # ratio of neighbouring frequencies up to which a root may be pursued
 EXPECTED = 0.03  # relative distance from the extrapolated velocity within which a pursued root may lie
@@ -129,15 +129,20 @@ def hidden_crossing(
 
 @kernel
 def refined(
-    omega: float, low: float, high: float, mode: int, model: tuple[Array, Array, Array, Array], table: Array
+    omega: float,
+    low: float,
+    high: float,
+    low_count: int,
+    high_count: int,
+    mode: int,
+    model: tuple[Array, Array, Array, Array],
+    table: Array,
 ) -> float:
     """Return the root between `low` (count at most `mode`) and `high` (count above `mode`).
 
-    Bisection by count until one crossing is left, then regula falsi with inverse quadratic steps
-    (Chandrupatla 1997) on the secular function, then the counts on both sides.
+    Bisection by count until one crossing is left, then the zero of the secular function, then the counts on
+    both sides of it. Where the two disagree the count decides.
     """
-    low_count = rayleigh_count(omega, low, *model)
-    high_count = rayleigh_count(omega, high, *model)
     while (low_count != mode or high_count != mode + 1) and high - low > 2e-15 * high:
         middle = 0.5 * (low + high)
         count = rayleigh_count(omega, middle, *model)
@@ -158,15 +163,14 @@ def refined(
             return root
         if high - low <= 2.0 * margin:
             break
-    while high - low > 4e-16 * high:  # the secular function is too noisy here: the count decides
+    while True:
         middle = 0.5 * (low + high)
-        if middle <= low or middle >= high:
-            break
+        if not low < middle < high:
+            return middle
         if rayleigh_count(omega, middle, *model) > mode:
             high = middle
         else:
             low = middle
-    return 0.5 * (low + high)
 
 
 @kernel
@@ -187,7 +191,7 @@ def bracketed(omega: float, low: float, high: float, table: Array) -> float:
             b, fb = a, fa
         a, fa = x, fx
         best = a if abs(fa) < abs(fb) else b
-        tolerance = 2e-14 * abs(best) / abs(b - a)
+        tolerance = 2e-15 * abs(best) / abs(b - a)
         if tolerance > 0.5 or fa == 0.0:
             return best
         xi = (a - b) / (c - b)
@@ -215,7 +219,7 @@ def scanned(
         high = next_velocity(omega, low, top, thickness, vp, vs)
         high_count = rayleigh_count(omega, high, *model)
         if high_count > mode:
-            return refined(omega, low, high, mode, model, table)
+            return refined(omega, low, high, low_count, high_count, mode, model, table)
         right = value_and_slope(omega, high, -NEARBY * high, table)
         if high_count == mode:
             start = low
@@ -223,14 +227,14 @@ def scanned(
                 middle = 0.5 * (start + high)
                 count = rayleigh_count(omega, middle, *model)
                 if count > mode:
-                    return refined(omega, start, middle, mode, model, table)
+                    return refined(omega, start, middle, low_count, count, mode, model, table)
                 start, low_count = middle, count
             if low_count == mode:
                 if start > low:
                     left = value_and_slope(omega, start, NEARBY * start, table)
                 crossing = hidden_crossing(omega, start, high, left, right, mode, model, table)
                 if crossing == crossing:
-                    return refined(omega, start, crossing, mode, model, table)
+                    return refined(omega, start, crossing, mode, mode + 1, mode, model, table)
         low, low_count, left = high, high_count, right
     return math.nan
 
