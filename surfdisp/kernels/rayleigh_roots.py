@@ -38,6 +38,7 @@ PHASE_STEP = 0.8  # largest change of vertical phase from one velocity of a scan
 VELOCITY_STEP = 0.1  # largest relative change of velocity in a scan
 NEARBY = 1e-7  # relative step of difference quotients
 CLOSE = 1.5  # ratio of neighbouring frequencies up to which a root may be pursued
+MODERATE = 6.0  # ratio of vs to c up to which the secular function is as exact as `MARGIN`
 EXPECTED = 0.03  # relative distance from the extrapolated velocity within which a pursued root may lie
 
 
@@ -150,27 +151,41 @@ def refined(
             high, high_count = middle, count
         else:
             low, low_count = middle, count
-    for attempt in range(8):
-        root = bracketed(omega, low, high, table)
-        margin = MARGIN * 4.0**attempt * root
-        below = max(root - margin, low)
-        above = min(root + margin, high)
-        if rayleigh_count(omega, below, *model) > mode:
-            high = below
-        elif rayleigh_count(omega, above, *model) <= mode:
-            low = above
-        else:
-            return root
-        if high - low <= 2.0 * margin:
-            break
-    while True:
+    root = certified(omega, bracketed(omega, low, high, table), low, high, mode, model)
+    return root if root == root else bisected(omega, low, high, mode, model)
+
+
+@kernel
+def certified(
+    omega: float, root: float, low: float, high: float, mode: int, model: tuple[Array, Array, Array, Array]
+) -> float:
+    """Return the root of branch `mode` that the counts see close to `root`, or NaN.
+
+    It is `root` itself where the counts differ across `MARGIN`. The secular function loses digits over layers
+    much faster than c; there the counts differ across a wider margin, and the root is bisected by count.
+    """
+    margin = MARGIN
+    for _ in range(6):
+        below = max(root * (1.0 - margin), low)
+        above = min(root * (1.0 + margin), high)
+        if rayleigh_count(omega, below, *model) <= mode < rayleigh_count(omega, above, *model):
+            return root if margin == MARGIN else bisected(omega, below, above, mode, model)
+        margin *= 4.0
+    return math.nan
+
+
+@kernel
+def bisected(
+    omega: float, low: float, high: float, mode: int, model: tuple[Array, Array, Array, Array]
+) -> float:
+    """Return the root between `low` (count at most `mode`) and `high` (count above `mode`) by count alone."""
+    while high - low > 1e-13 * high:
         middle = 0.5 * (low + high)
-        if not low < middle < high:
-            return middle
         if rayleigh_count(omega, middle, *model) > mode:
             high = middle
         else:
             low = middle
+    return 0.5 * (low + high)
 
 
 @kernel
@@ -277,9 +292,9 @@ def pursued(
                 + c * fa * fb / ((fc - fa) * (fc - fb))
             )
             # the error of the secant step is K (x-a)(x-b), that of the quadratic one K^2 (x-a)(x-b)(x-c)
-            correction = abs(x - secant)
-            error = correction * correction * abs((x - c) / ((x - a) * (x - b)))
-            if error <= 2e-12 * x:
+            ea, eb, ec = abs(x - a), abs(x - b), abs(x - c)
+            bend = max(abs(x - secant) / (ea * eb), eb / (ea * ec))  # K, from this step and from the last
+            if bend * bend * ea * eb * ec <= 2e-12 * x:
                 return x, slope
         c, fc = a, fa
         a, fa = b, fb
@@ -332,6 +347,7 @@ def slowest_velocities(
     logs = np.zeros(4)  # the latest roots, newest first
     roots = np.zeros(4)
     known = 0
+    fastest = np.max(vs)
     slope = last_slope = math.nan  # of the secular function at the latest two roots
     for i in range(omega.size):
         w = omega[i]
@@ -346,15 +362,16 @@ def slowest_velocities(
             guess, spread = extrapolated(log_w, logs, roots, known)
             spread = min(max(1.5 * spread / guess, 1e-7), 0.01)
             root, found_slope = pursued(w, guess, spread, slope * slope / last_slope, low, top, table)
-            below = root * (1.0 - MARGIN)
-            if (
-                abs(root - guess) < EXPECTED * guess
-                and below > low
-                and sign * found_slope < 0.0
-                and rayleigh_count(w, below, *model) == mode
-                and (mode == 0 or rayleigh_count(w, root * (1.0 + MARGIN), *model) == mode + 1)
-            ):
-                velocity = root
+            if abs(root - guess) < EXPECTED * guess and sign * found_slope < 0.0:
+                if (
+                    mode == 0
+                    and fastest < MODERATE * root
+                    and rayleigh_count(w, root * (1.0 - MARGIN), *model) == 0
+                    and rayleigh_secular(w, root * (1.0 + MARGIN), table) < 0.0  # odd: cheaper than the count
+                ):
+                    velocity = root
+                else:
+                    velocity = certified(w, root, low, top, mode, model)
                 new_slope = found_slope
         if velocity != velocity and low < top:
             velocity = scanned(w, low, top, mode, model, table)
