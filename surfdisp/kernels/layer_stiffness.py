@@ -27,6 +27,9 @@ import math
 
 from .jit import inlined, kernel
 
+Element = tuple[float, float, float, float, float, float, float, float]
+Numerators = tuple[float, float, float, float, float, float, float, float, float]
+
 THIN = 0.5  # |A^2| and |B^2| below which the power series are summed
 STIFF = 0.5  # (c/vs)^2 below which the closed differences are used
 TERMS = 9  # of each power series; the first one left out is below 1e-17 at THIN
@@ -66,8 +69,10 @@ def even_functions(square: float) -> tuple[float, float, float]:
 @kernel
 def layer_stiffness(
     wavenumber: float, thickness: float, shear_modulus: float, e_p: float, e_s: float
-) -> tuple[float, float, float, float, float, float]:
-    """Return (xx, xz, zz, cxx, cxz, czz) of a layer [Pa/m].
+) -> Element:
+    """Return (xx, xz, zz, cxx, cxz, czz, xx + cxx, zz + czz) of a layer [Pa/m].
+
+    The two sums, forces against a shift of the whole layer, are small differences where it is thin.
 
     Parameters
     ----------
@@ -83,18 +88,27 @@ def layer_stiffness(
     X = wavenumber * thickness
     X2 = X * X
     if X2 * max(abs(1.0 - e_p), abs(1.0 - e_s)) < THIN:
-        D, nxx, nxz, nzz, mxx, mxz, mzz = _thin(X, e_p, e_s)
+        D, nxx, nxz, nzz, mxx, mxz, mzz, sxx, szz = _thin(X, e_p, e_s)
     elif e_s < STIFF:
-        D, nxx, nxz, nzz, mxx, mxz, mzz = _stiff(X, e_p, e_s)
+        D, nxx, nxz, nzz, mxx, mxz, mzz, sxx, szz = _stiff(X, e_p, e_s)
     else:
-        D, nxx, nxz, nzz, mxx, mxz, mzz = _general(X, e_p, e_s)
+        D, nxx, nxz, nzz, mxx, mxz, mzz, sxx, szz = _general(X, e_p, e_s)
     scale = wavenumber * shear_modulus
     g = scale * e_s / D
-    return g * nxx, g * nxz + scale * (2.0 - e_s), g * nzz, g * mxx, g * mxz, g * mzz
+    return (
+        g * nxx,
+        g * nxz + scale * (2.0 - e_s),
+        g * nzz,
+        g * mxx,
+        g * mxz,
+        g * mzz,
+        g * sxx,
+        g * szz,
+    )
 
 
 @inlined
-def _general(X: float, e_p: float, e_s: float) -> tuple[float, float, float, float, float, float, float]:
+def _general(X: float, e_p: float, e_s: float) -> Numerators:
     """The textbook form (Kausel & Roësset 1981, Table 1)."""
     rr = 1.0 - e_p
     ss = 1.0 - e_s
@@ -104,20 +118,16 @@ def _general(X: float, e_p: float, e_s: float) -> tuple[float, float, float, flo
     sb *= X
     one = ea * eb
     D = 2.0 * (one - ca * cb) + (1.0 + rr * ss) * sa * sb
+    nxx = ca * sb - rr * cb * sa
     nxz = one - ca * cb + rr * ss * sa * sb
-    return (
-        D,
-        ca * sb - rr * cb * sa,
-        nxz,
-        cb * sa - ss * ca * sb,
-        rr * sa * eb - sb * ea,
-        ca * eb - cb * ea,
-        ss * sb * ea - sa * eb,
-    )
+    nzz = cb * sa - ss * ca * sb
+    mxx = rr * sa * eb - sb * ea
+    mzz = ss * sb * ea - sa * eb
+    return D, nxx, nxz, nzz, mxx, ca * eb - cb * ea, mzz, nxx + mxx, nzz + mzz
 
 
 @inlined
-def _stiff(X: float, e_p: float, e_s: float) -> tuple[float, float, float, float, float, float, float]:
+def _stiff(X: float, e_p: float, e_s: float) -> Numerators:
     """Differences in closed form; c < vs, so that r and s are real."""
     r = math.sqrt(1.0 - e_p)
     s = math.sqrt(1.0 - e_s)
@@ -147,19 +157,16 @@ def _stiff(X: float, e_p: float, e_s: float) -> tuple[float, float, float, float
     t = (0.5 * M * (1.0 - pp * pp) - 2.0 * P * sh_m * ch_m) / (X * rs)
     v = (P * (1.0 + pp) * sh_m - M * (1.0 - pp) * ch_m) / (X * rs)
     one_minus_rs = (e_p + e_s - e_p * e_s) / (1.0 + rs)
-    return (
-        D,
-        e_p * cb * sa + t,
-        -2.0 * sh_m * sh_m - one_minus_rs * rs * sasb,
-        e_s * ca * sb - t,
-        v - e_p * sa * eb,
-        (1.0 - pp) * sh_m,
-        -v - e_s * sb * ea,
-    )
+    nxx = e_p * cb * sa + t
+    nxz = -2.0 * sh_m * sh_m - one_minus_rs * rs * sasb
+    nzz = e_s * ca * sb - t
+    mxx = v - e_p * sa * eb
+    mzz = -v - e_s * sb * ea
+    return D, nxx, nxz, nzz, mxx, (1.0 - pp) * sh_m, mzz, nxx + mxx, nzz + mzz
 
 
 @inlined
-def _thin(X: float, e_p: float, e_s: float) -> tuple[float, float, float, float, float, float, float]:
+def _thin(X: float, e_p: float, e_s: float) -> Numerators:
     """Divided differences as power series in the complete homogeneous polynomials of their two arguments."""
     X2 = X * X
     rr = 1.0 - e_p
@@ -205,6 +212,7 @@ def _thin(X: float, e_p: float, e_s: float) -> tuple[float, float, float, float,
         nxz = -X2 * (0.5 * r_minus_s * r_minus_s * shc * shc + one_minus_rs * rs * Sa * Sb)
     else:
         nxz = X2 * (rr * ss * Sa * Sb - 0.5 * rr * Ea - 0.5 * ss * Eb - 0.25 * X2 * rr * ss * Ea * Eb)
+    both = d * (0.5 * H + S_ab)
     return (
         D,
         X * (e_p * Cb * Sa + 0.5 * d * H),
@@ -213,6 +221,8 @@ def _thin(X: float, e_p: float, e_s: float) -> tuple[float, float, float, float,
         X * (d * S_ab - e_p * Sa),
         d * C_ab,
         -X * (d * S_ab + e_s * Sb),
+        X * (0.5 * b * e_p * Sa * Eb + both),
+        X * (0.5 * a * e_s * Sb * Ea - both),
     )
 
 

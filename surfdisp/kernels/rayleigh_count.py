@@ -18,7 +18,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from .jit import inlined, kernel
-from .layer_stiffness import half_space_stiffness, layer_stiffness
+from .layer_stiffness import Element, half_space_stiffness, layer_stiffness
 
 Array = NDArray[np.float64]
 
@@ -53,20 +53,23 @@ def negative_eigenvalues(xx: float, zz: float, determinant: float) -> int:
 
 @inlined
 def condensed(
-    pxx: float,
-    pxz: float,
-    pzz: float,
-    determinant: float,
-    element: tuple[float, float, float, float, float, float],
+    zxx: float, zxz: float, zzz: float, determinant: float, element: Element
 ) -> tuple[float, float, float]:
-    """Return top - cross pivot^-1 cross^T: the stiffness at the top of a layer over all that lies below."""
-    xx, xz, zz, cxx, cxz, czz = element
-    inverse = 1.0 / determinant
+    """Return the stiffness at the top of a layer over all that lies below, from that (z) at its bottom.
+
+    This is top - cross (bottom + z)^-1 cross^T, where `determinant` is that of the pivot bottom + z. In a
+    thin layer it is the small difference of large numbers, so that it is rebuilt from the forces against a
+    shift of the whole layer: (top + cross) - cross (bottom + z)^-1 (bottom + z + cross^T).
+    """
+    xx, xz, zz, cxx, cxz, czz, sxx, szz = element
+    pxx, pxz, pzz = xx + zxx, zxz - xz, zz + zzz
+    inverse = -1.0 / determinant
     ax = (cxx * pzz - cxz * pxz) * inverse
     az = (cxz * pxx - cxx * pxz) * inverse
     bx = -(cxz * pzz + czz * pxz) * inverse
     bz = (cxz * pxz + czz * pxx) * inverse
-    return xx - ax * cxx - az * cxz, xz + ax * cxz - az * czz, zz + bx * cxz - bz * czz
+    qxx, qxz, qzx, qzz = zxx + sxx, pxz - cxz, pxz + cxz, zzz + szz
+    return sxx + ax * qxx + az * qzx, xz + cxz + ax * qxz + az * qzz, szz + bx * qxz + bz * qzz
 
 
 @kernel
@@ -98,7 +101,7 @@ def rayleigh_count(
             pzz = element[2] + zzz
             determinant = nudged_determinant(pxx, pxz, pzz)
             count += negative_eigenvalues(pxx, pzz, determinant)
-            zxx, zxz, zzz = condensed(pxx, pxz, pzz, determinant, element)
+            zxx, zxz, zzz = condensed(zxx, zxz, zzz, determinant, element)
     return count + negative_eigenvalues(zxx, zzz, nudged_determinant(zxx, zxz, zzz))
 
 

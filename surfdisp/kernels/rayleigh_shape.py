@@ -55,7 +55,7 @@ def rayleigh_shape(
     for i in range(last):
         total += piece_count(omega, k, thickness[i], vs[i])
     layer = np.empty(total, np.int64)
-    elements = np.empty((last, 6))
+    elements = np.empty((last, 8))
     n = 0
     for i in range(last):
         pieces = piece_count(omega, k, thickness[i], vs[i])
@@ -64,7 +64,7 @@ def rayleigh_shape(
         element = layer_stiffness(
             k, thickness[i] / pieces, density[i] * vs[i] * vs[i], ratio_p * ratio_p, ratio_s * ratio_s
         )
-        for q in range(6):
+        for q in range(8):
             elements[i, q] = element[q]
         layer[n : n + pieces] = i
         n += pieces
@@ -76,15 +76,15 @@ def rayleigh_shape(
         k, density[last] * vs[last] * vs[last], ratio_p * ratio_p, ratio_s * ratio_s
     )
     for i in range(total - 1, -1, -1):
-        xx, xz, zz, cxx, cxz, czz = elements[layer[i]]
-        pxx, pxz, pzz = below[i + 1, 0] + xx, below[i + 1, 1] - xz, below[i + 1, 2] + zz
-        below[i] = condensed(pxx, pxz, pzz, nudged_determinant(pxx, pxz, pzz), (xx, xz, zz, cxx, cxz, czz))
+        xx, xz, zz, cxx, cxz, czz, sxx, szz = elements[layer[i]]
+        zxx, zxz, zzz = below[i + 1]
+        determinant = nudged_determinant(zxx + xx, zxz - xz, zzz + zz)
+        below[i] = condensed(zxx, zxz, zzz, determinant, (xx, xz, zz, cxx, cxz, czz, sxx, szz))
     for i in range(total):  # the same upside down: xz and cxz change sign
-        xx, xz, zz, cxx, cxz, czz = elements[layer[i]]
-        pxx, pxz, pzz = above[i, 0] + xx, above[i, 1] + xz, above[i, 2] + zz
-        above[i + 1] = condensed(
-            pxx, pxz, pzz, nudged_determinant(pxx, pxz, pzz), (xx, -xz, zz, cxx, -cxz, czz)
-        )
+        xx, xz, zz, cxx, cxz, czz, sxx, szz = elements[layer[i]]
+        zxx, zxz, zzz = above[i]
+        determinant = nudged_determinant(zxx + xx, zxz + xz, zzz + zz)
+        above[i + 1] = condensed(zxx, zxz, zzz, determinant, (xx, -xz, zz, cxx, -cxz, czz, sxx, szz))
     start = 0
     least = np.inf
     for i in range(total + 1):
@@ -105,15 +105,14 @@ def rayleigh_shape(
     size = np.hypot(ux, uz)
     faces[start, 0], faces[start, 1] = ux / size, uz / size
     for i in range(start, total):
-        _, xz, _, cxx, cxz, czz = elements[layer[i]]
-        xx, zz = elements[layer[i], 0], elements[layer[i], 2]
+        xx, xz, zz, cxx, cxz, czz, _, _ = elements[layer[i]]
         ux, uz = faces[i, 0], faces[i, 1]
         fx, fz = -(cxx * ux - cxz * uz), -(cxz * ux + czz * uz)
         faces[i + 1, 0], faces[i + 1, 1] = solved(
             below[i + 1, 0] + xx, below[i + 1, 1] - xz, below[i + 1, 2] + zz, fx, fz
         )
     for i in range(start, 0, -1):
-        xx, xz, zz, cxx, cxz, czz = elements[layer[i - 1]]
+        xx, xz, zz, cxx, cxz, czz, _, _ = elements[layer[i - 1]]
         ux, uz = faces[i, 0], faces[i, 1]
         fx, fz = -(cxx * ux + cxz * uz), -(czz * uz - cxz * ux)
         faces[i - 1, 0], faces[i - 1, 1] = solved(
