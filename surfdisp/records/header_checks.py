@@ -27,8 +27,11 @@ CONVINCING = 0.85
 EARLY = 0.01
 """How far first arrivals may seem to precede the blow [s]: the width of the onset's window and of a pulse."""
 
-SLOWEST_FIRST_ARRIVAL = 100.0
-"""Slowest velocity of a first arrival near the source [m/s]."""
+LIKELY, POSSIBLE = (100.0, 0.02), (60.0, 0.04)
+"""Slowest velocity of a first arrival near the source [m/s], and how much later its pulse may be seen [s].
+
+What is not likely is compared with the opposite sign of the delay; what is not possible is doubted.
+"""
 
 FAR_OUT = 2.0
 """Spread lengths outside the spread beyond which a source position is doubted."""
@@ -67,24 +70,22 @@ def _check_delay(gather: Gather, sound: NDArray[np.int64]) -> tuple[Gather, list
     offset = float(np.median(gather.offsets[nearest]))
     arrival = float(np.median(first_arrivals(gather)[nearest]))
     other = arrival - 2.0 * gather.delay
-    if _violation(arrival, offset) == 0.0:
-        return gather, []
     seen = f"first arrivals at {offset:.1f} m come {1e3 * arrival:.0f} ms after the blow"
-    if abs(gather.delay) > EARLY / 2 and _violation(other, offset) == 0.0:
+    if not _fits(arrival, offset, LIKELY) and _fits(other, offset, POSSIBLE) and abs(other) < abs(arrival):
         return dataclasses.replace(gather, delay=-gather.delay), [
             f"{seen} with the header's delay of {gather.delay:g} s, and {1e3 * other:.0f} ms with the "
             f"opposite sign; {-gather.delay:g} s is used"
         ]
+    if _fits(arrival, offset, POSSIBLE):
+        return gather, []
     if arrival < 0.0:
         return gather, [f"{seen}: they precede it; check delay and trigger"]
-    return gather, [
-        f"{seen}: later than {SLOWEST_FIRST_ARRIVAL:g} m/s; check delay, trigger and source position"
-    ]
+    return gather, [f"{seen}: later than {POSSIBLE[0]:g} m/s; check delay, trigger and source position"]
 
 
-def _violation(arrival: float, offset: float) -> float:
-    """By how much an arrival is too early or too late [s]."""
-    return max(0.0, -EARLY - arrival, arrival - offset / SLOWEST_FIRST_ARRIVAL - 2.0 * EARLY)
+def _fits(arrival: float, offset: float, slowest: tuple[float, float]) -> bool:
+    """Whether an arrival [s] is neither before the blow nor slower than a velocity and the pulse's rise."""
+    return -EARLY <= arrival <= offset / slowest[0] + slowest[1]
 
 
 def _check_source(gather: Gather, labels: tuple[str, ...]) -> tuple[list[str], bool]:
