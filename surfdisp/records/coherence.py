@@ -12,10 +12,10 @@ FloatArray = NDArray[np.float64]
 LOWEST, HIGHEST = 4.0, 60.0
 """Frequencies compared [Hz]: hammer surface waves, below the air wave and most machinery."""
 
-SLOWNESSES = np.linspace(1.0 / 1500.0, 1.0 / 60.0, 61)
+SLOWNESSES = np.linspace(1.0 / 1500.0, 1.0 / 60.0, 91)
 """Slownesses tried between neighbours [s/m]."""
 
-NEIGHBOURS = 6
+NEIGHBOURS = 8
 """Traces that a trace is compared with, the nearest on its side of the source."""
 
 LEAST_NEIGHBOURS = 3

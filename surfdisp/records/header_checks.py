@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 from ..core.gather import Gather
 from .arrivals import energy_times, first_arrivals
 from .located_shot import LocatedShot
+from .rank_correlation import rank_correlation
 from .selection import select_traces
 
 FloatArray = NDArray[np.float64]
@@ -91,7 +92,7 @@ def _fits(arrival: float, offset: float, slowest: tuple[float, float]) -> bool:
 def _check_source(gather: Gather, labels: tuple[str, ...]) -> tuple[list[str], bool]:
     """What speaks against the source position, and whether that is a contradiction."""
     times = energy_times(gather)
-    here = _rank_correlation(gather.offsets, times)
+    here = rank_correlation(gather.offsets, times)
     best, place = _best_source(gather, times)
     named = " and equals the shot number" if _is_label(gather.source, labels) else ""
     if here < CONTRADICTED and best >= CONVINCING:
@@ -120,7 +121,7 @@ def _best_source(gather: Gather, times: FloatArray) -> tuple[float, str]:
     between = 0.5 * (x[2:-1] + x[1:-2])
     places = [(float(x[0]), "off the low end"), (float(x[-1]), "off the high end")]
     places += [(float(place), f"near {place:g} m") for place in between]
-    return max((_rank_correlation(np.abs(x - place), times), words) for place, words in places)
+    return max((rank_correlation(np.abs(x - place), times), words) for place, words in places)
 
 
 def _time_at_source(gather: Gather, times: FloatArray) -> float:
@@ -148,17 +149,3 @@ def _check_loudest(gather: Gather) -> list[str]:
 
 def _is_label(source: float, labels: tuple[str, ...]) -> bool:
     return source == int(source) and any(label.isdigit() and int(label) == int(source) for label in labels)
-
-
-def _rank_correlation(a: FloatArray, b: FloatArray) -> float:
-    """Spearman's rank correlation, equal values sharing their mean rank; 0 where all are equal."""
-    ranks = np.stack([_ranks(a), _ranks(b)])
-    ranks -= ranks.mean(axis=1, keepdims=True)
-    scale = float(np.sqrt(np.prod(np.sum(np.square(ranks), axis=1))))
-    return float(ranks[0] @ ranks[1]) / scale if scale > 0.0 else 0.0
-
-
-def _ranks(values: FloatArray) -> FloatArray:
-    ordered = np.sort(values)
-    below, upto = (np.searchsorted(ordered, values, side) for side in ("left", "right"))
-    return 0.5 * (below + upto).astype(np.float64)

@@ -54,7 +54,7 @@ def stack_blows(blows: Sequence[Gather], sound: Sequence[NDArray[np.bool_]]) -> 
     likeness = [
         np.median([match[1] for j, match in enumerate(row) if j != i]) for i, row in enumerate(matches)
     ]
-    leading = int(np.argmax(likeness))
+    leading = int(np.argmax(np.round(likeness, 3)))  # the first of equals
     shifts = tuple(match[0] for match in matches[leading])
     correlations = tuple(match[1] for match in matches[leading])
     used = tuple(i == leading or value >= LIKE for i, value in enumerate(correlations))

@@ -22,6 +22,9 @@ FLAT_TOP = 3
 REVERSED = -0.4
 """Coherence with the neighbours at or below which a trace is reversed."""
 
+REVERSED_AT_THE_END = -0.55
+"""The same for the last trace of a side, whose neighbours all lie on one hand of it."""
+
 UNRELATED = 0.25
 """Coherence below which a trace has nothing to do with its neighbours."""
 
@@ -40,8 +43,8 @@ MOSTLY = 0.8
 
 @dataclass(frozen=True)
 class Examination:
-    """`faults`: reason by index of a faulty trace. `coherence` (n_receivers,): of each trace with its
-    neighbours, after reversed ones were turned; NaN where it cannot be told."""
+    """`faults`: reason by index of a faulty trace. `coherence` (n_receivers,): of each trace as recorded with
+    its neighbours, reversed ones among them turned; NaN where it cannot be told."""
 
     faults: dict[int, str]
     coherence: FloatArray
@@ -82,6 +85,7 @@ def examine_traces(gather: Gather) -> Examination:
         told = "noise: coherence with its neighbours"
         faults |= {int(i): f"{told} {coherence[i]:.2f}" for i in np.flatnonzero(noise)}
     faults |= dict.fromkeys(_clipped(gather) - set(dead), "clipped: flat tops at its extreme")
+    coherence[list(reversed_ones)] *= -1.0
     return Examination(faults, coherence)
 
 
@@ -118,17 +122,26 @@ def _flat_top(row: FloatArray) -> bool:
     return False
 
 
-def _reversed(gather: Gather, ignored: frozenset[int]) -> tuple[list[int], FloatArray]:
-    """Turn the most opposed trace and look again, until none is opposed; also the coherence then."""
-    found: list[int] = []
+def _reversed(gather: Gather, ignored: frozenset[int]) -> tuple[set[int], FloatArray]:
+    """Turn the most opposed trace and look again, until none is opposed; also the coherence then.
+
+    A good trace among several reversed ones may be turned first, and is turned back in its time. Two
+    neighbours that are both reversed are told; three look like good ones among themselves.
+    """
+    turned: set[int] = set()
     data = gather.data.copy()
+    limit = np.full(len(data), REVERSED)
+    limit[[0, -1]] = REVERSED_AT_THE_END
     coherence = neighbour_coherence(gather, ignored)
-    while np.any(coherence <= REVERSED) and len(found) < len(data) // 2:
-        worst = int(np.nanargmin(coherence))
-        found.append(worst)
+    for _ in range(len(data)):
+        opposed = np.where(coherence <= limit, coherence, 0.0)
+        if not np.any(opposed):
+            break
+        worst = int(np.argmin(opposed))
+        turned ^= {worst}
         data[worst] *= -1.0
         coherence = neighbour_coherence(dataclasses.replace(gather, data=data), ignored)
-    return [index for index in found if coherence[index] >= -REVERSED], coherence
+    return turned, coherence
 
 
 def _loudest_over_median(gather: Gather) -> FloatArray:

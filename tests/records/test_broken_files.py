@@ -78,7 +78,7 @@ def test_other_files_cut_anywhere_are_refused_as_unreadable(tmp_path, kind):
             read_gather(tmp_path / "odd.dat")
 
 
-@settings(max_examples=150, deadline=None)
+@settings(max_examples=80, deadline=None)
 @given(position=st.integers(0, 10_000), value=st.integers(0, 255), second=st.integers(0, 10_000))
 def test_a_seg2_file_with_wrong_bytes_never_gives_a_traceback(tmp_path_factory, position, value, second):
     folder = tmp_path_factory.mktemp("odd")
@@ -89,7 +89,7 @@ def test_a_seg2_file_with_wrong_bytes_never_gives_a_traceback(tmp_path_factory, 
     assert isinstance(found, str) or found.data.size
 
 
-@settings(max_examples=60, deadline=None)
+@settings(max_examples=40, deadline=None)
 @given(
     kind=st.sampled_from(["SEGY", "SU", "SAC", "MSEED"]),
     positions=st.lists(st.integers(0, 10_000), min_size=1, max_size=4),
@@ -104,7 +104,7 @@ def test_other_files_with_wrong_bytes_never_give_a_traceback(tmp_path_factory, k
     assert isinstance(found, str) or found.data.size
 
 
-@settings(max_examples=60, deadline=None)
+@settings(max_examples=40, deadline=None)
 @given(
     content=st.binary(max_size=6000),
     head=st.sampled_from([b"", b"\x55\x3a\x01\x00", b"000001D ", b"\x3a\x55\x00\x01"]),

@@ -70,6 +70,11 @@ def test_the_filter_does_not_move_a_pulse():
     assert np.all(np.argmax(found.data, axis=1) == 500)
 
 
+def test_the_filter_does_not_carry_the_end_of_a_record_to_its_beginning():
+    found = condition(rows(lambda t: np.exp(-(((t - 0.99) / 0.005) ** 2))), band=(5.0, 40.0), taper=0.0)
+    assert np.max(np.abs(found.data[:, :200])) < 0.02 * np.max(np.abs(found.data))
+
+
 def test_the_window_keeps_each_receivers_own_times():
     found = condition(
         rows(np.ones_like, delay=-0.1), detrend=False, taper=0.0, window=(100.0, 400.0), window_edge=0.05

@@ -93,6 +93,13 @@ def test_loud_traces_far_from_the_source_are_told(tmp_path, make_shot):
     assert "not near the source at -4 m" in told[0]
 
 
+def test_a_far_source_whose_arrivals_fit_is_believed(tmp_path, make_shot):
+    record, gathers = row(tmp_path, make_shot(LINE, 150.0, samples=4000, noise=0.02), 150.0)
+    assert record.used
+    assert record.flags == ()
+    assert gathers[0].source == 150.0
+
+
 def test_noise_alone_is_refused_and_its_header_not_judged(tmp_path):
     record, gathers = row(tmp_path, np.random.default_rng(1).normal(size=(24, 2000)), 50.0)
     assert not record.used

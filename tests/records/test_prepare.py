@@ -180,6 +180,42 @@ def test_a_reversed_geophone_is_set_aside_where_one_record_alone_cannot_tell(wri
 SOURCES = {"a.dat": -4.0, "b.dat": -10.0, "c.dat": 50.0, "d.dat": 56.0}
 
 
+def test_polarity_is_left_alone_where_a_record_can_tell_or_only_one_other_calls_it_reversed(write, make_shot):
+    shots = {name: make_shot(LINE, source, noise=0.02) for name, source in SOURCES.items()}
+    for name in ("a.dat", "b.dat", "c.dat"):
+        shots[name][10] *= -1.0  # plugged the right way for the last shot
+    shots["a.dat"][3] *= -1.0
+    shots["d.dat"][3] = np.random.default_rng(1).normal(size=2000) * np.exp(
+        -(((np.arange(2000) - 700) / 99.0) ** 2)
+    )
+    _, gathers = prepare_records([write(n, SOURCES[n], data=d) for n, d in shots.items()])
+    missing = {gather.name: set(LINE) - set(gather.receivers) for gather in gathers}
+    assert missing == {"a.dat": {6.0, 20.0}, "b.dat": {20.0}, "c.dat": {20.0}, "d.dat": set()}
+
+
+def test_one_source_position_on_two_spreads_is_two_gathers(write):
+    paths = [
+        write("a.dat", -4.0),
+        write("b.dat", -4.0, receivers=LINE[:12]),
+        write("c.dat", -4.0, receivers=LINE / 2),
+    ]
+    _, gathers = prepare_records(paths)
+    assert [(gather.name, gather.spread, len(gather.receivers)) for gather in gathers] == [
+        ("a.dat", 0, 24),
+        ("b.dat", 1, 12),
+        ("c.dat", 2, 24),
+    ]
+
+
+@pytest.mark.parametrize(
+    "other", [ShotGeometry(source=-4.0, source_off_line=3.0), ShotGeometry(delay=-0.005)]
+)
+def test_blows_aside_of_each_other_or_of_another_delay_are_not_stacked(write, make_shot, other):
+    paths = [write("a.dat", -4.0), write("b.dat", -4.0, data=make_shot(LINE, -4.0, seed=2))]
+    _, gathers = prepare_records(paths, geometry=Geometry(shots={"b.dat": other}))
+    assert [gather.name for gather in gathers] == ["a.dat", "b.dat"]
+
+
 def test_two_blows_that_recorded_different_lengths_are_kept_apart(write, make_shot):
     paths = [write("a.dat", -4.0), write("b.dat", -4.0, data=make_shot(LINE, -4.0, samples=1500))]
     records, gathers = prepare_records(paths)
