@@ -5,8 +5,8 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import ArrayLike
 
-from surfdisp.core.checks import FloatArray, positive
-from surfdisp.core.errors import InputError
+from ..core.checks import FloatArray, positive
+from ..core.errors import InputError
 
 RAYLEIGH_ARRIVAL = 0.5 * np.sqrt(3.0 + np.sqrt(3.0))
 """Arrival of the Rayleigh wave at Poisson's ratio 1/4 over that of the shear wave (Pekeris 1955)."""

@@ -55,7 +55,9 @@ def test_the_files_are_those_that_the_script_writes(script, tmp_path):
     for old, new in zip(FILES, again, strict=True):
         kept, made = read_gather(old), read_gather(new)
         assert kept.source == made.source
-        assert np.abs(kept.data - made.data).max() < 1e-6 * np.abs(kept.data).max()
+        peaks = np.abs(kept.data).max(axis=1, keepdims=True)
+        counts = 3e-7 * peaks.max()  # rounding to 24 bits
+        assert np.all(np.abs(kept.data - made.data) < 1e-3 * peaks + counts)  # the tolerance of synthesis
 
 
 def test_perturbed_earths_stay_within_their_bounds_and_differ(script):
