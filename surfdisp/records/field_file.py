@@ -15,6 +15,9 @@ from .seg2_layout import check_layout, hide_date
 FORMATS = {"SEG-2": "SEG2", "miniSEED": "MSEED", "SAC": "SAC", "SEG-Y": "SEGY", "SU": "SU"}
 """Our names for the formats and ObsPy's, in the order in which content is asked; SU has no mark."""
 
+OPTIONS: dict[str, dict[str, Any]] = {"SAC": {"round_sampling_interval": False}}
+"""What ObsPy is asked besides: else it rounds 62.5 microseconds to 62."""
+
 EXPECTED = "a SEG-2, SEG-Y, SU, SAC or miniSEED file"
 
 SEGY_SAMPLE_SIZE = {1: 4, 2: 4, 3: 2, 4: 4, 5: 4, 8: 1}
@@ -121,7 +124,7 @@ def _read(content: bytes, kind: str, name: str) -> Any:
     try:
         # From memory: a path would be taken for a pattern or an address. One named format: the automatic
         # choice would also try formats that run code.
-        stream = obspy.read(BytesIO(content), format=FORMATS[kind])
+        stream = obspy.read(BytesIO(content), format=FORMATS[kind], **OPTIONS.get(kind, {}))
     except Exception as error:
         what = " ".join(str(error).split()) or type(error).__name__
         raise FormatError(f"{name}: begins like {kind} but cannot be read as such ({what:.120})") from error

@@ -55,7 +55,7 @@ def read_gather(path: str | Path | Sequence[str | Path], *, geometry: Geometry |
         shots = shots_of(parse(content, one.name))
         if len(shots) > 1:
             raise FormatError(
-                f"{one}: holds {len(shots)} shots; expected one (prepare_records takes them all)"
+                f"{one.name}: holds {len(shots)} shots; expected one (prepare_records takes them all)"
             )
         records += shots
     shot = locate(join(records), table)

@@ -21,6 +21,9 @@ FEET = 2
 LENGTH_UNITS = (0, 1)
 """Coordinate units (bytes 89-90) that mean lengths; 0 is what most writers leave."""
 
+BROKEN_RATES = (12000, 16000, 24000, 32000, 48000)
+"""Sampling rates of instruments whose interval is no whole number of microseconds [Hz]."""
+
 DEAD = 2
 """Trace identification code (bytes 29-30) of a trace that the crew or the instrument marked dead."""
 
@@ -54,6 +57,7 @@ def _shot(file: FieldFile, members: list[tuple[Any, Any]], unit: float, *, sever
         flags.append("positions in the header are in feet; converted to metres")
     if several:
         flags.append(f"field record {record}, one of several shots in the file")
+    flags += _truncated_interval(table.interval)
     receivers, source = _positions(headers, flags)
     marked = {
         i: "marked dead in the header" for i, h in enumerate(headers) if h.trace_identification_code == DEAD
@@ -71,6 +75,19 @@ def _shot(file: FieldFile, members: list[tuple[Any, Any]], unit: float, *, sever
         flags=(*flags, *file.said),
         refused=table.refused | marked,
     )
+
+
+def _truncated_interval(interval: float) -> list[str]:
+    """Say so where whole microseconds, which is all the format holds, may stand for a broken number."""
+    found = round(1e6 * interval)
+    for rate in BROKEN_RATES:
+        true = 1e6 / rate
+        if abs(found - true) < 1.0 and found != true:
+            error = 100.0 * abs(found / true - 1.0)
+            return [
+                f"sampling interval {found} microseconds: if {rate} Hz is meant, times are {error:.1f} % off"
+            ]
+    return []
 
 
 def _delay(headers: list[Any]) -> float:

@@ -41,7 +41,7 @@ def from_sac(file: FieldFile) -> RawRecord:
         file=file.name,
         format=file.format,
         data=table.data,
-        interval=table.interval,
+        interval=float(f"{table.interval:.7g}"),  # the header holds a 32-bit float
         delay=float(header.get("b", 0.0)) - float(header["o"]) if "o" in header else 0.0,
         receivers=receivers,
         source=source,

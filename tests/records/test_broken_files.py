@@ -122,15 +122,24 @@ def test_a_small_file_cannot_ask_for_any_amount_of_memory(tmp_path):
     assert "overlap" in outcome(tmp_path, bytes(content))
 
 
-def test_samples_that_are_no_numbers_set_the_trace_aside(tmp_path):
-    data = np.ones((4, 30))
-    path = tmp_path / "a.dat"
-    write_seg2(path, data, 0.001, receivers=[0.0, 1.0, 2.0, 3.0], source=-1.0)
-    content = bytearray(path.read_bytes())
-    struct.pack_into("<f", content, len(content) - 8, float("nan"))
+@pytest.mark.parametrize("value", [float("nan"), float("inf"), float("-inf")])
+def test_samples_that_are_no_numbers_set_the_trace_aside(tmp_path, value):
+    content = bytearray(whole_seg2(tmp_path))
+    struct.pack_into("<f", content, len(content) - 8, value)
     gather = outcome(tmp_path, bytes(content))
     np.testing.assert_array_equal(gather.receivers, [0.0, 1.0, 2.0])
     assert gather.notes == ("channel 4 set aside: samples that are no sensible numbers",)
+
+
+def test_a_trace_of_another_length_is_set_aside(tmp_path):
+    content = bytearray(whole_seg2(tmp_path))
+    second = struct.unpack_from("<I", content, 36)[0]
+    struct.pack_into("<I", content, second + 8, 20)
+    gather = outcome(tmp_path, bytes(content))
+    np.testing.assert_array_equal(gather.receivers, [0.0, 2.0, 3.0])
+    assert gather.notes == (
+        "channel 2 set aside: 20 samples every 0.001 s where the others have 30 every 0.001 s",
+    )
 
 
 def test_a_survey_of_nothing_but_broken_files_has_only_reasons(tmp_path):

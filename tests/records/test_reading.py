@@ -26,19 +26,19 @@ def stream_of(data, interval=0.0005):
     return obspy.Stream([obspy.Trace(row.astype(np.float32), {"delta": interval}) for row in data])
 
 
-def segy(path, kind, *, data=DATA, system=1, text="", **per_trace):
+def segy(path, kind, *, data=DATA, interval=0.0005, system=1, **per_trace):
     """A SEG-Y or SU file by ObsPy's writer; `per_trace` gives header values, one per trace or for all."""
     from obspy.core import AttribDict
     from obspy.io.segy.segy import SEGYBinaryFileHeader, SEGYTraceHeader
 
-    stream = stream_of(data)
+    stream = stream_of(data, interval)
     for index, trace in enumerate(stream):
         header = SEGYTraceHeader()
         for name, values in per_trace.items():
             value = values if np.ndim(values) == 0 else values[index]
             setattr(header, name, int(value))
         trace.stats["su" if kind == "SU" else "segy"] = AttribDict(trace_header=header)
-    stream.stats = AttribDict(binary_file_header=SEGYBinaryFileHeader(), textual_file_header=text.encode())
+    stream.stats = AttribDict(binary_file_header=SEGYBinaryFileHeader(), textual_file_header=b"")
     stream.stats.binary_file_header.measurement_system = system
     with warnings.catch_warnings():
         warnings.simplefilter("ignore")
@@ -169,6 +169,15 @@ def test_segy_in_feet(tmp_path):
     np.testing.assert_allclose(gather.receivers, np.array([0.0, 10.0, 20.0, 30.0]) * 0.3048)
 
 
+@pytest.mark.parametrize("kind", ["SEGY", "SU"])
+def test_whole_microseconds_that_stand_for_a_broken_number_are_told(tmp_path, kind):
+    even = read_gather(segy(tmp_path / "even.sgy", kind, group_coordinate_x=[0, 10, 20, 30]))
+    odd = read_gather(segy(tmp_path / "odd.sgy", kind, interval=6.25e-5, group_coordinate_x=[0, 10, 20, 30]))
+    assert even.notes == ()
+    assert odd.interval == pytest.approx(6.2e-5)
+    assert odd.notes == ("sampling interval 62 microseconds: if 16000 Hz is meant, times are 0.8 % off",)
+
+
 def test_segy_with_offsets_only(tmp_path):
     offset = "distance_from_center_of_the_source_point_to_the_center_of_the_receiver_group"
     gather = read_gather(segy(tmp_path / "a.sgy", "SEGY", **{offset: [4, 6, 8, 10]}))
@@ -215,11 +224,11 @@ def test_several_shots_in_one_file_are_told_apart(tmp_path, make_shot):
     assert [gather.source for gather in gathers] == [-4.0, 26.0]
 
 
-def sac(path, row, **header):
+def sac(path, row, interval=0.0005, **header):
     import obspy
     from obspy.core import AttribDict
 
-    trace = obspy.Trace(row.astype(np.float32), {"delta": 0.0005, "sac": AttribDict(header)})
+    trace = obspy.Trace(row.astype(np.float32), {"delta": interval, "sac": AttribDict(header)})
     trace.write(str(path), format="SAC")
     return path
 
@@ -242,6 +251,21 @@ def test_sac_traces_of_one_shot_make_one_gather(tmp_path, make_shot):
     assert len(records) == 12
     assert len(gathers) == 1
     np.testing.assert_array_equal(gathers[0].data, gather.data)
+
+
+def test_a_damaged_trace_of_several_files_is_named_by_its_channel(tmp_path):
+    rows = DATA.copy()
+    rows[2, 3] = np.nan
+    paths = [sac(tmp_path / f"{i}.sac", row, dist=0.001 * (i + 1)) for i, row in enumerate(rows)]
+    gather = read_gather(paths)
+    np.testing.assert_allclose(gather.receivers, [1.0, 2.0, 4.0], rtol=1e-6)
+    assert gather.notes == ("channel 3 set aside: samples that are no sensible numbers",)
+
+
+def test_sac_keeps_half_a_microsecond(tmp_path):
+    gather = read_gather(sac(tmp_path / "a.sac", DATA[0], 6.25e-5, dist=0.01))
+    assert gather.interval == 6.25e-5
+    assert gather.notes == ()
 
 
 def test_sac_latitudes_become_metres(tmp_path):
