@@ -7,7 +7,18 @@ from collections.abc import Sequence
 from ..core import Record
 from .words import printable
 
-HEADINGS = ("file", "traces", "interval ms", "length s", "spacing m", "source m", "delay ms", "stack", "used")
+HEADINGS = (
+    "file",
+    "traces",
+    "interval ms",
+    "length s",
+    "spacing m",
+    "source m",
+    "delay ms",
+    "stack",
+    "flags",
+    "used",
+)
 
 
 def records_text(records: Sequence[Record]) -> str:
@@ -37,6 +48,7 @@ def _row(record: Record) -> tuple[str, ...]:
         _number(record.source, 1.0, ".5g"),
         _number(record.delay, 1e3, ".4g"),
         _number(record.stack, 1.0, ".0f"),
+        str(len(record.flags)),
         "yes" if record.used else "no",
     )
 
