@@ -7,15 +7,17 @@ from collections.abc import Iterator, Sequence
 
 from ..core import DispersionCurve, Profile, Record, SiteResult, SurveyResult
 from ..site.assess import VELOCITY_ONLY
-from .tables import summary
+from .tables import sorted_notes
 from .words import (
     interval,
+    metres,
     number,
     observable,
     printable,
     probabilities,
     profile_at_legible_depths,
     whole,
+    without_file,
 )
 
 WIDTH = 100
@@ -30,9 +32,10 @@ def summary_text(result: SurveyResult) -> str:
         lines += ["", "Profile: none", "Vs30: not stated", "Site class: not stated"]
     else:
         lines += ["", *_site(result.site)]
-    remarks = () if result.site is None else result.site.notes
-    warnings = [warning for warning in summary(result)["warnings"] if warning not in remarks]
-    lines += _list("Warnings", warnings) + _list("Remarks on the site quantities", remarks)
+    warnings, assumptions, remarks = sorted_notes(result)
+    lines += _list("Warnings", warnings)
+    lines += _list("Assumptions and limits of the inversion", assumptions) if assumptions else []
+    lines += _list("Remarks on the site quantities", remarks) if remarks else []
     return "\n".join(lines) + "\n"
 
 
@@ -52,9 +55,9 @@ def _records(records: tuple[Record, ...]) -> Iterator[str]:
 
 def _record_words(record: Record) -> str:
     if not record.used:
-        return printable(record.reason or "no reason given")
+        return printable(without_file(record.reason or "no reason given", record.file))
     words = [f"{record.traces} traces"] if record.traces is not None else []
-    words += [f"source at {number(record.source)} m"] if record.source is not None else []
+    words += [f"source at {metres(record.source)} m"] if record.source is not None else []
     words += ["1 flag"] if len(record.flags) == 1 else []
     words += [f"{len(record.flags)} flags"] if len(record.flags) > 1 else []
     return ", ".join(words)

@@ -13,7 +13,7 @@ from ..core import DispersionCurve, Gather, Picks
 from ..core.checks import FloatArray
 from .axes import frequency_scale
 from .palette import FORWARD, HAIR, INK, REVERSE, finish, sheet, styled
-from .words import number, printable, shortened
+from .words import metres, printable, shortened
 
 MARKS = "osD^vP"
 NAMED_SHOTS = 14
@@ -60,7 +60,7 @@ def _curve(axes: Axes, curve: DispersionCurve) -> None:
 
 
 def _label(picks: Picks, gather: Gather | None) -> str:
-    source = "" if gather is None else f", {number(gather.source)} m"
+    source = "" if gather is None else f", {metres(gather.source)} m"
     return f"{shortened(printable(picks.name), 24)}{source}"
 
 

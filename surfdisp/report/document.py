@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator, Sequence
+from collections.abc import Iterator, Sequence
 from typing import Any
 
 from ..core import SurveyResult
 from . import curve_sections, earth_sections, field_sections
 from .blocks import Block, bullets, heading, keys, new_page, paragraph, shown, signature
 from .sources import sources
-from .tables import summary
+from .tables import sorted_notes
 from .words import number, printable, shortened
 
 WARNING_LINES = 10
@@ -108,8 +108,7 @@ def _outcome(result: SurveyResult) -> str:
 
 
 def _closing(result: SurveyResult) -> Iterator[Block]:
-    remarks: Iterable[str] = () if result.site is None else result.site.notes
-    warnings = [warning for warning in summary(result)["warnings"] if warning not in remarks]
+    warnings, _, _ = sorted_notes(result)
     yield heading("Warnings")
     yield bullets(warnings, WARNING_LINES, "summary.json") if warnings else paragraph("None.")
     yield heading("Cautions")

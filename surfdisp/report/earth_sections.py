@@ -12,6 +12,7 @@ from .blocks import NUMBER, TEXT, WIDE, Block, beside, bullets, figures_named, h
 from .words import interval, number, printable, probabilities, profile_at_legible_depths, whole
 
 LAYERING_LINES = 8
+ASSUMPTION_LINES = 14
 
 EARTH_COLUMNS = tuple(
     (name, NUMBER)
@@ -41,11 +42,13 @@ def inversion(found: InversionResult, figures: Sequence[str]) -> Iterator[Block]
     yield paragraph(
         f"The search {state} after {found.iterations} iterations: {found.message or 'no further message'}.",
         f"Mean squared misfit {number(found.chi_square)} in units of the variance (1 is a fit to the noise).",
-        f"Ranges come from {len(found.ensemble)} weighted earths: covariance around the best ones, several "
-        "layerings, and the extension below the data. Layerings tried:",
+        "Layerings tried:",
         leads_on=True,
     )
     yield bullets(found.layerings, LAYERING_LINES, "project.h5")
+    if found.notes:
+        yield paragraph("Assumptions and limits:", leads_on=True)
+        yield bullets(found.notes, ASSUMPTION_LINES, "summary.json")
     yield paragraph(
         "Best earth; resolution 1 means that the data decide a layer's velocity, 0 that the prior does. Vp "
         "and density are assumed as the settings say, not measured:",

@@ -8,7 +8,7 @@ import numpy as np
 
 from ..core import Gather, Record, SurveyResult
 from .blocks import NUMBER, TEXT, WIDE, Block, bullets, figures_named, heading, paragraph, settings, table
-from .words import number, printable, shortened
+from .words import metres, number, printable, shortened, without_file
 
 RECORD_ROWS = 20
 FLAG_LINES = 6
@@ -43,12 +43,12 @@ def geometry(gathers: Sequence[Gather]) -> Iterator[Block]:
 def _spread(gathers: Sequence[Gather]) -> Iterator[str]:
     first = max(gathers, key=lambda gather: len(gather.receivers))
     yield (
-        f"{len(first.receivers)} vertical receivers from {number(first.receivers[0])} to "
-        f"{number(first.receivers[-1])} m along the line, median spacing {number(first.spacing)} m."
+        f"{len(first.receivers)} vertical receivers from {metres(first.receivers[0])} to "
+        f"{metres(first.receivers[-1])} m along the line, median spacing {metres(first.spacing)} m."
     )
     positions = sorted({gather.source for gather in gathers})
     more = f" and {len(positions) - 16} more" if len(positions) > 16 else ""
-    yield f"Sources at {', '.join(map(number, positions[:16]))}{more} m."
+    yield f"Sources at {', '.join(map(metres, positions[:16]))}{more} m."
     length = first.interval * first.data.shape[1]
     yield f"Sampling interval {number(1e3 * first.interval)} ms, {number(length)} s used of each record."
     elevations = np.asarray(first.elevations)
@@ -65,7 +65,11 @@ def records(table_of: Sequence[Record]) -> Iterator[Block]:
     yield table(RECORD_COLUMNS, [_record_row(record) for record in table_of[:RECORD_ROWS]])
     if len(table_of) > RECORD_ROWS:
         yield paragraph(f"{len(table_of) - RECORD_ROWS} more records are listed in summary.json.")
-    flags = [f"{printable(record.file)}: {flag}" for record in table_of for flag in record.flags]
+    flags = [
+        f"{printable(record.file)}: {without_file(flag, record.file)}"
+        for record in table_of
+        for flag in record.flags
+    ]
     if flags:
         yield bullets(flags, FLAG_LINES, "project.h5")
 
@@ -77,11 +81,11 @@ def _record_row(record: Record) -> list[str]:
         "yes" if record.used else "no",
         number(record.traces),
         number(_milli(record.interval)),
-        number(record.source),
+        metres(record.source),
         number(_milli(record.delay)),
         number(record.stack),
         record.sha256[:10] or "–",
-        shortened(printable(record.reason or flags), 120),
+        shortened(printable(without_file(record.reason or flags, record.file)), 120),
     ]
 
 

@@ -30,13 +30,11 @@ def figure_makers(result: SurveyResult) -> Iterator[tuple[str, Maker]]:
     Shots come `PANELS_PER_SHEET` to a figure, images one per spread; the second and later ones of a kind are
     numbered: figure_records, figure_records_2, ...
     """
-    for number, first in enumerate(range(0, len(result.gathers), PANELS_PER_SHEET), 1):
-        part = slice(first, first + PANELS_PER_SHEET)
-        yield _name("records", number), partial(record_section, result.gathers[part], result.curve)
-    shots_alone = len(result.images) == len(result.stacked_images)  # the images of the spreads show them all
-    for number, first in enumerate(range(0, 0 if shots_alone else len(result.images), PANELS_PER_SHEET), 1):
-        part = slice(first, first + PANELS_PER_SHEET)
-        yield _name("shots", number), partial(shot_images, result.images[part], result.picks[part])
+    for name, part in _sheets("records", len(result.gathers)):
+        yield name, partial(record_section, result.gathers[part], result.curve)
+    if len(result.images) > len(result.stacked_images):  # else the images of the spreads show them all
+        for name, part in _sheets("shots", len(result.images)):
+            yield name, partial(shot_images, result.images[part], result.picks[part])
     spreads = list(dict.fromkeys(gather.spread for gather in result.gathers))
     for number, (image, spread) in enumerate(zip(result.stacked_images, spreads, strict=False), 1):
         shots = zip(result.gathers, result.picks, strict=True)
@@ -62,6 +60,14 @@ def write_figures(folder: str | os.PathLike[str], result: SurveyResult) -> list[
         )
         names.append(f"{name}.png")
     return names
+
+
+def _sheets(kind: str, count: int) -> Iterator[tuple[str, slice]]:
+    """Yield the name of each figure of small multiples and its share of `count` panels, evenly dealt."""
+    sheets = -(-count // PANELS_PER_SHEET)
+    each = -(-count // max(sheets, 1))
+    for number in range(1, sheets + 1):
+        yield _name(kind, number), slice((number - 1) * each, number * each)
 
 
 def _name(kind: str, number: int) -> str:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from typing import NamedTuple
 
 import numpy as np
 from matplotlib.axes import Axes
@@ -13,6 +14,7 @@ from numpy.typing import NDArray
 
 from ..core import DispersionCurve, DispersionImage, Picks
 from ..core.checks import FloatArray
+from .axes import log_scales
 from .palette import ACCEPTED, BEST, INK, REFUSED, TIDE, finish, sheet, styled
 from .panels import grid, label_outer, legend_below
 from .words import printable, shortened
@@ -29,14 +31,14 @@ PIXELS = 400
 def shot_images(images: Sequence[DispersionImage], picks: Sequence[Picks]) -> Figure:
     """Return a figure with one panel per shot: its image, its picks and its limits."""
     figure, panels = grid(len(images), panel_height=1.95, extra_height=0.75)
-    top = _highest_velocity_shown(picks)
     for axes, image, pick in zip(panels, images, picks, strict=True):
-        _power(axes, image, top)
+        view = _view(image, picks)
+        _power(axes, image, view)
         _limits(axes, image)
         _picks(axes, pick, size=2.5)
-        _alias(axes, image, *_accepted(pick))
-        _frame(axes, image, top)
-        axes.set_title(shortened(printable(image.name), 34))
+        _alias(axes, image, *accepted_of(pick))
+        _frame(axes, view)
+        axes.set_title(shortened(printable(image.name), 30))
     label_outer(panels, FREQUENCY, VELOCITY)
     _power_scale(figure, panels)
     legend_below(figure, panels, columns=3)
@@ -50,13 +52,13 @@ def image_with_picks(
     """Return one image over the whole sheet with the picks of one shot or several, limits, and a curve."""
     figure = sheet(4.1)
     axes = figure.subplots()
-    top = _highest_velocity_shown(picks)
-    _power(axes, image, top)
+    view = _view(image, picks)
+    _power(axes, image, view)
     _limits(axes, image)
     for pick in picks:
         _picks(axes, pick, size=4.0 if len(picks) == 1 else 1.5, band=len(picks) == 1)
     if curve is None and len(picks) == 1:
-        _alias(axes, image, *_accepted(picks[0]))
+        _alias(axes, image, *accepted_of(picks[0]))
     if curve is not None and len(curve.frequency):
         _alias(axes, image, curve.frequency, curve.velocity)
         axes.errorbar(
@@ -64,7 +66,7 @@ def image_with_picks(
             elinewidth=0.8, markeredgecolor="white", markeredgewidth=0.3, label="combined curve ± sigma",
             zorder=4,
         )  # fmt: skip
-    _frame(axes, image, top)
+    _frame(axes, view)
     title = f"{image.shots} shots stacked" if image.shots > 1 else ""
     axes.set_title(", ".join(filter(None, [shortened(printable(image.name), 60), title])))
     axes.set_xlabel(FREQUENCY)
@@ -74,20 +76,41 @@ def image_with_picks(
     return figure
 
 
-def _highest_velocity_shown(picks: Sequence[Picks]) -> float:
-    """Return three times the fastest accepted pick [m/s]: the ridge and its aliases, not the empty rest."""
-    fastest = [pick.velocity[pick.accepted & np.isfinite(pick.velocity)].max(initial=0.0) for pick in picks]
-    return 3.0 * float(max(fastest, default=0.0)) or np.inf
+class _View(NamedTuple):
+    """What of an image is shown: lowest and highest frequency [Hz], slowest and fastest velocity [m/s]."""
+
+    lowest: float
+    highest: float
+    slowest: float
+    fastest: float
 
 
-def _power(axes: Axes, image: DispersionImage, top: float) -> None:
-    if image.power.size:
-        frequencies = np.linspace(image.frequencies[0], image.frequencies[-1], PIXELS)
-        velocities = np.linspace(image.velocities[0], min(top, image.velocities[-1]), PIXELS)
-        rows, columns = _nearest(image.velocities, velocities), _nearest(image.frequencies, frequencies)
-        pixels = image.power.T[rows[:, None], columns]
-        extent = (frequencies[0], frequencies[-1], velocities[0], velocities[-1])
-        axes.imshow(pixels, cmap=TIDE, vmin=0.0, vmax=1.0, origin="lower", aspect="auto", extent=extent)
+def _view(image: DispersionImage, picks: Sequence[Picks]) -> _View:
+    """Return the range around the accepted picks where their aliases and limits show, or the whole image."""
+    frequencies, velocities = image.frequencies, image.velocities
+    accepted = [accepted_of(pick) for pick in picks]
+    frequency = np.concatenate([np.empty(0), *(pair[0] for pair in accepted)])
+    velocity = np.concatenate([np.empty(0), *(pair[1] for pair in accepted)])
+    return _View(
+        max(frequencies[0], 0.5 * frequency.min()) if len(frequency) else frequencies[0],
+        frequencies[-1],
+        max(velocities[0], 0.4 * velocity.min()) if len(velocity) else velocities[0],
+        min(velocities[-1], 2.5 * velocity.max()) if len(velocity) else velocities[-1],
+    )
+
+
+def _power(axes: Axes, image: DispersionImage, view: _View) -> None:
+    """Draw the power on logarithmic scales, where lines of equal wavelength run parallel."""
+    frequencies = np.geomspace(view.lowest, view.highest, PIXELS)
+    velocities = np.geomspace(view.slowest, view.fastest, PIXELS)
+    rows, columns = _nearest(image.velocities, velocities), _nearest(image.frequencies, frequencies)
+    pixels = image.power.T[rows[:, None], columns]
+    log_scales(axes)
+    axes.autoscale(enable=False)
+    axes.imshow(
+        pixels, cmap=TIDE, vmin=0.0, vmax=1.0, origin="lower", aspect="auto", extent=(0.0, 1.0, 0.0, 1.0),
+        transform=axes.transAxes,  # the pixels are even in the logarithm, as the axes are
+    )  # fmt: skip
 
 
 def _nearest(values: FloatArray, wanted: FloatArray) -> NDArray[np.intp]:
@@ -108,7 +131,8 @@ def _limits(axes: Axes, image: DispersionImage) -> None:
             axes.plot(image.frequencies, velocity, color=INK, linewidth=0.8, linestyle=style, label=label)
 
 
-def _accepted(picks: Picks) -> tuple[FloatArray, FloatArray]:
+def accepted_of(picks: Picks) -> tuple[FloatArray, FloatArray]:
+    """Return frequencies [Hz] and velocities [m/s] of the accepted picks."""
     accepted = picks.accepted & np.isfinite(picks.velocity)
     return picks.frequency[accepted], picks.velocity[accepted]
 
@@ -151,11 +175,10 @@ def _half_width(axes: Axes, picks: Picks, accepted: NDArray[np.bool_]) -> None:
         axes.plot(picks.frequency, edge, color=ACCEPTED, linewidth=0.7, label="half-width of the ridge")
 
 
-def _frame(axes: Axes, image: DispersionImage, top: float) -> None:
-    """Keep the frame to what was scanned and is shown, whatever the limits' lines reach."""
-    if image.power.size:
-        axes.set_xlim(image.frequencies[0], image.frequencies[-1])
-        axes.set_ylim(image.velocities[0], min(top, image.velocities[-1]))
+def _frame(axes: Axes, view: _View) -> None:
+    """Keep the frame to what is shown, whatever the limits' lines reach."""
+    axes.set_xlim(view.lowest, view.highest)
+    axes.set_ylim(view.slowest, view.fastest)
     finish(axes)
 
 

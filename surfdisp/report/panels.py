@@ -9,7 +9,7 @@ from matplotlib.figure import Figure
 
 from .palette import sheet
 
-PANELS_PER_SHEET = 6
+PANELS_PER_SHEET = 9
 COLUMNS = 3
 
 

@@ -50,7 +50,7 @@ def shear_velocity_profile(
             linewidth=1.6,
             label=name,
         )
-    main.set_xlim(left=0.0)
+    main.set_xlim(0.0, 1.2 * _fastest_shown(site.profile, inversion.earth, bottom))
     main.set_ylim(bottom, 0.0)
     main.set_xlabel("shear velocity (m/s)")
     main.set_ylabel("depth (m)")
@@ -66,6 +66,11 @@ def shear_velocity_profile(
         xycoords=("axes fraction", "data"), textcoords="offset points", ha="right", va="top",
     )  # fmt: skip
     return figure
+
+
+def _fastest_shown(profile: Profile, earth: LayeredEarth, bottom: float) -> float:
+    """Return the largest velocity of range and best earth; single other earths may leave the frame."""
+    return float(max(np.nanmax(profile.high, initial=1.0), earth.vs[earth.depth < bottom].max()))
 
 
 def _earths(axes: Axes, ensemble: Ensemble, bottom: float) -> None:

@@ -12,7 +12,7 @@ from matplotlib.figure import Figure
 from ..core import DispersionCurve, Gather
 from .palette import BEST, INK, finish, styled
 from .panels import grid, label_outer, legend_below
-from .words import number, printable, shortened
+from .words import metres, number, printable, shortened
 
 SAMPLES_SHOWN = 400
 """Traces of more samples are drawn with every n-th one."""
@@ -25,7 +25,7 @@ def record_section(gathers: Sequence[Gather], curve: DispersionCurve | None = No
     Each trace is scaled to its own largest sample. With a `curve`, two lines show when waves of its slowest
     and fastest phase velocity would arrive.
     """
-    figure, panels = grid(len(gathers), panel_height=2.2, extra_height=0.5)
+    figure, panels = grid(len(gathers), panel_height=2.3, extra_height=0.5)
     until = max((_end_of_the_waves(gather) for gather in gathers), default=0.0)
     for axes, gather in zip(panels, gathers, strict=True):
         _traces(axes, gather, until)
@@ -49,7 +49,7 @@ def _traces(axes: Axes, gather: Gather, until: float) -> None:
     axes.add_collection(LineCollection(list(lines), colors=INK, linewidths=0.45))
     axes.set_xlim(gather.receivers[0] - 1.5 * spacing, gather.receivers[-1] + 1.5 * spacing)
     axes.set_ylim(until, min(gather.delay, 0.0))
-    axes.set_title(f"{shortened(printable(gather.name), 22)}, source at {number(gather.source)} m")
+    axes.set_title(f"{shortened(printable(gather.name), 30)}\nsource at {metres(gather.source)} m")
 
 
 def _end_of_the_waves(gather: Gather) -> float:

@@ -52,6 +52,17 @@ def warnings_of(result: SurveyResult) -> list[str]:
     return list(dict.fromkeys([*result.warnings, *notes]))
 
 
+def sorted_notes(result: SurveyResult) -> tuple[list[str], tuple[str, ...], tuple[str, ...]]:
+    """Return all that summary.json lists under `warnings` in three parts.
+
+    Warnings proper come first, then what the inversion assumed, then remarks on the site quantities.
+    """
+    assumptions = () if result.inversion is None else result.inversion.notes
+    remarks = () if result.site is None else result.site.notes
+    others = {*assumptions, *remarks}
+    return [warning for warning in summary(result)["warnings"] if warning not in others], assumptions, remarks
+
+
 def write_tables(folder: str | os.PathLike[str], result: SurveyResult) -> None:
     """Write summary.json, curve.csv and profile.csv into the existing `folder`."""
     folder = Path(folder)

@@ -37,6 +37,16 @@ def number(value: float | None, digits: int = 3) -> str:
     return shown.rstrip("0").rstrip(".") if "." in shown else shown
 
 
+def metres(value: float | None) -> str:
+    """Return a position or distance in metres to the centimetre, as far as it is not round."""
+    return number(value) if value is None or not math.isfinite(value) else f"{round(value, 2):g}"
+
+
+def without_file(sentence: str, file: str) -> str:
+    """Return `sentence` without the file's name at its head, for places where that stands already."""
+    return sentence.removeprefix(f"{file}: ")
+
+
 def whole(value: float) -> str:
     """Return `value` without decimals; "–" for nothing."""
     return f"{value:.0f}" if math.isfinite(value) else "–"

@@ -6,7 +6,7 @@ import pytest
 
 from surfdisp.core import Record
 from surfdisp.report import summary_text
-from surfdisp.report.words import number, percent, printable, profile_at_legible_depths
+from surfdisp.report.words import metres, number, percent, printable, profile_at_legible_depths
 
 
 def test_the_text_tells_the_whole_outcome(survey):
@@ -29,6 +29,22 @@ def test_the_text_tells_the_whole_outcome(survey):
     ):
         assert phrase in text
     assert max(map(len, text.splitlines())) <= 100
+
+
+def test_assumptions_and_remarks_stand_apart_from_warnings(survey):
+    inversion = dataclasses.replace(survey.inversion, notes=("Vs may fall with depth.",))
+    text = summary_text(dataclasses.replace(survey, inversion=inversion))
+    warnings, rest = text.split("Assumptions and limits of the inversion: 1\n")
+    assumptions, remarks = rest.split("Remarks on the site quantities:")
+    assert "Warnings: 2\n" in warnings
+    assert assumptions.strip() == "- Vs may fall with depth."
+    assert "licensed practice prevail" in remarks
+
+
+def test_a_reason_names_its_file_once(survey):
+    record = Record(file="a.dat", reason="a.dat: no positions")
+    text = summary_text(dataclasses.replace(survey, records=(record,)))
+    assert "  not used  a.dat  no positions\n" in text
 
 
 def test_the_check_against_the_curve_says_whether_it_agrees(survey):
@@ -68,6 +84,7 @@ def test_profiles_are_quoted_by_the_step_that_holds_at_the_depth(survey):
 def test_numbers_keep_three_digits_and_probabilities_never_round_to_certainty():
     shown = [number(value) for value in (271.34, 24.51, 9.0, 0.01234, -4.0, 1234.6, 0.0, float("nan"), None)]
     assert shown == ["271", "24.5", "9", "0.0123", "-4", "1235", "0", "–", "–"]
+    assert [metres(value) for value in (100.5, -30.0, 1234.567, None)] == ["100.5", "-30", "1234.57", "–"]
     assert [percent(value) for value in (0.0, 0.001, 0.3, 0.999, 1.0)] == [
         "0 %",
         "< 1 %",

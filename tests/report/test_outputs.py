@@ -9,6 +9,8 @@ from surfdisp.core import InputError
 from surfdisp.project import read_project
 from surfdisp.report import outputs, write_outputs
 
+from .conftest import survey_of, without_picks
+
 CONTRACT = {"project.h5", "summary.json", "curve.csv", "profile.csv", "report.pdf"}
 
 
@@ -26,7 +28,8 @@ def test_a_run_leaves_every_file_of_the_contract_and_nothing_else(tmp_path, surv
     assert [path.name for path in (tmp_path / "new").iterdir()] == ["out"]
 
 
-def test_an_existing_folder_is_replaced_file_by_file(tmp_path, survey, unpicked):
+def test_an_existing_folder_is_replaced_file_by_file(tmp_path):
+    unpicked = without_picks(survey_of(1))
     out = tmp_path / "out"
     out.mkdir()
     (out / "notes of the crew.txt").write_text("muddy")
