@@ -49,7 +49,7 @@ def phase_velocity(
     no narrow stretch of the same branch turns back at lower velocity is a matter of following the branch
     closely, not of proof.
     """
-    from ..kernels.rayleigh_roots import slowest_velocities
+    from ..kernels.rayleigh_curve import slowest_velocities
 
     omega, order = _descending(frequency)
     _rayleigh_only(wave)
@@ -81,6 +81,7 @@ def mode_count(
         If a velocity reaches the shear velocity of the half-space, beyond which modes leak, or a value is not
         positive and finite.
     """
+    from ..kernels.layer_table import layer_table
     from ..kernels.rayleigh_count import rayleigh_counts
 
     _rayleigh_only(wave)
@@ -99,7 +100,7 @@ def mode_count(
             f"frequency and velocity must have the same length, or one of them length 1; "
             f"got {frequencies.size} and {velocities.size}"
         ) from error
-    counts: NDArray[np.int64] = rayleigh_counts(omega.copy(), c.copy(), *_model(earth))
+    counts: NDArray[np.int64] = rayleigh_counts(omega.copy(), c.copy(), layer_table(*_model(earth)))
     return counts
 
 
@@ -144,8 +145,8 @@ def phase_velocity_and_sensitivity(
     InputError
         As `phase_velocity`.
     """
+    from ..kernels.rayleigh_curve import slowest_velocities
     from ..kernels.rayleigh_derivatives import curve_derivatives
-    from ..kernels.rayleigh_roots import slowest_velocities
 
     omega, order = _descending(frequency)
     model = _model(earth)

@@ -30,10 +30,10 @@ from .jit import inlined, kernel
 Element = tuple[float, float, float, float, float, float, float, float]
 Numerators = tuple[float, float, float, float, float, float, float, float, float]
 
-THIN = 0.5  # |A^2| and |B^2| below which the power series are summed
+THIN = 0.15  # |A^2| and |B^2| below which the power series are summed
 STIFF = 0.5  # (c/vs)^2 below which the closed differences are used
-TERMS = 9  # of each power series; the first one left out is below 1e-17 at THIN
-FEW_TERMS = 6  # the same where |A^2| and |B^2| are below 0.05
+TERMS = 7  # of each power series; the first one left out is below 1e-17 at THIN
+FEW_TERMS = 5  # the same where |A^2| and |B^2| are below 0.01
 COSINE = tuple(1.0 / math.factorial(2 * n) for n in range(TERMS + 2))
 SINE = tuple(1.0 / math.factorial(2 * n + 1) for n in range(TERMS + 2))
 SMALL = 0.3  # |x| below which cosh x and sinh x are summed as power series
@@ -181,7 +181,7 @@ def _thin(X: float, e_p: float, e_s: float) -> Numerators:
     sine, power = 1.0, 1.0  # 1/(2n+1)! and 4^n
     Ea = Eb = Sa = Sb = 0.0  # 2 (C - 1) / a and S
     an = bn = 1.0
-    terms = TERMS if max(abs(a), abs(b)) > 0.05 else FEW_TERMS
+    terms = TERMS if max(abs(a), abs(b)) > 0.01 else FEW_TERMS
     for n in range(1, terms + 1):
         Sa += sine * an
         Sb += sine * bn

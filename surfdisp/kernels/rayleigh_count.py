@@ -19,6 +19,7 @@ from numpy.typing import NDArray
 
 from .jit import inlined, kernel
 from .layer_stiffness import Element, half_space_stiffness, layer_stiffness
+from .layer_table import MODULUS, P_SLOWNESS, S_SLOWNESS, THICKNESS
 
 Array = NDArray[np.float64]
 
@@ -26,10 +27,9 @@ SMALLEST = 1e-15  # a pivot's determinant relative to its squared size, below wh
 
 
 @inlined
-def piece_count(omega: float, wavenumber: float, thickness: float, vs: float) -> int:
+def piece_count(omega: float, wavenumber: float, thickness: float, slowness_squared: float) -> int:
     """Return into how many pieces a layer is split so that no piece can resonate when clamped."""
-    slowness = omega / vs
-    excess = slowness * slowness - wavenumber * wavenumber
+    excess = omega * omega * slowness_squared - wavenumber * wavenumber
     if excess <= 0.0:
         return 1
     return int(thickness * math.sqrt(excess) / math.pi) + 1
@@ -73,27 +73,26 @@ def condensed(
 
 
 @kernel
-def rayleigh_count(
-    omega: float, velocity: float, thickness: Array, vp: Array, vs: Array, density: Array
-) -> int:
+def rayleigh_count(omega: float, velocity: float, table: Array) -> int:
     """Return the number of Rayleigh branches omega_j(k) < omega at k = omega / velocity.
 
-    `velocity` must lie below the shear velocity of the half-space, the last layer.
+    `velocity` must lie below the shear velocity of the half-space, the last row of the layer table.
     """
     k = omega / velocity
-    last = thickness.size - 1
-    ratio_p = velocity / vp[last]
-    ratio_s = velocity / vs[last]
+    cc = velocity * velocity
+    last = table.shape[0] - 1
     zxx, zxz, zzz = half_space_stiffness(
-        k, density[last] * vs[last] * vs[last], ratio_p * ratio_p, ratio_s * ratio_s
+        k, table[last, MODULUS], cc * table[last, P_SLOWNESS], cc * table[last, S_SLOWNESS]
     )
     count = 0
     for i in range(last - 1, -1, -1):
-        pieces = piece_count(omega, k, thickness[i], vs[i])
-        ratio_p = velocity / vp[i]
-        ratio_s = velocity / vs[i]
+        pieces = piece_count(omega, k, table[i, THICKNESS], table[i, S_SLOWNESS])
         element = layer_stiffness(
-            k, thickness[i] / pieces, density[i] * vs[i] * vs[i], ratio_p * ratio_p, ratio_s * ratio_s
+            k,
+            table[i, THICKNESS] / pieces,
+            table[i, MODULUS],
+            cc * table[i, P_SLOWNESS],
+            cc * table[i, S_SLOWNESS],
         )
         for _ in range(pieces):
             pxx = element[0] + zxx
@@ -106,11 +105,9 @@ def rayleigh_count(
 
 
 @kernel
-def rayleigh_counts(
-    omega: Array, velocity: Array, thickness: Array, vp: Array, vs: Array, density: Array
-) -> NDArray[np.int64]:
+def rayleigh_counts(omega: Array, velocity: Array, table: Array) -> NDArray[np.int64]:
     """Return `rayleigh_count` for each pair of angular frequency and velocity."""
     counts = np.empty(omega.size, np.int64)
     for i in range(omega.size):
-        counts[i] = rayleigh_count(omega[i], velocity[i], thickness, vp, vs, density)
+        counts[i] = rayleigh_count(omega[i], velocity[i], table)
     return counts

@@ -21,30 +21,11 @@ from numpy.typing import NDArray
 
 from .jit import kernel
 from .layer_stiffness import even_functions
+from .layer_table import CONTRAST, P_SLOWNESS, S_SLOWNESS, STEP, THICKNESS
 
 Array = NDArray[np.float64]
 
-THICKNESS, P_SLOWNESS, S_SLOWNESS, CONTRAST, STEP = range(5)  # columns of the table
 FAR = 1e100  # size beyond which the vector is scaled
-
-
-@kernel
-def secular_table(thickness: Array, vp: Array, vs: Array, density: Array) -> Array:
-    """Return what does not depend on frequency or velocity, one row per layer.
-
-    Columns: thickness, 1/vp^2, 1/vs^2, eps, and 2 (vs^2 - eps vs_below^2).
-    """
-    n = thickness.size
-    table = np.zeros((n, 5))
-    for i in range(n):
-        table[i, THICKNESS] = thickness[i]
-        table[i, P_SLOWNESS] = 1.0 / (vp[i] * vp[i])
-        table[i, S_SLOWNESS] = 1.0 / (vs[i] * vs[i])
-        if i < n - 1:
-            eps = density[i + 1] / density[i]
-            table[i, CONTRAST] = eps
-            table[i, STEP] = 2.0 * (vs[i] * vs[i] - eps * vs[i + 1] * vs[i + 1])
-    return table
 
 
 @kernel

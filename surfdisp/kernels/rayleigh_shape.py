@@ -53,12 +53,12 @@ def rayleigh_shape(
     last = thickness.size - 1
     total = 0
     for i in range(last):
-        total += piece_count(omega, k, thickness[i], vs[i])
+        total += piece_count(omega, k, thickness[i], 1.0 / (vs[i] * vs[i]))
     layer = np.empty(total, np.int64)
     elements = np.empty((last, 8))
     n = 0
     for i in range(last):
-        pieces = piece_count(omega, k, thickness[i], vs[i])
+        pieces = piece_count(omega, k, thickness[i], 1.0 / (vs[i] * vs[i]))
         ratio_p = velocity / vp[i]
         ratio_s = velocity / vs[i]
         element = layer_stiffness(

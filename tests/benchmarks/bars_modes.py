@@ -245,7 +245,7 @@ def best_times(
             curve[i] = min(curve[i], timed(phase_velocity, earth, frequency))
         for i, earth in enumerate(earths):
             both[i] = min(both[i], timed(phase_velocity_and_sensitivity, earth, frequency))
-    return floor.min(), curve.mean(), both.mean()
+    return floor.mean(), curve.mean(), both.mean()
 
 
 def timed(function: Callable[..., object], *arguments: object) -> float:

@@ -5,6 +5,7 @@ import math
 import numpy as np
 import pytest
 
+from surfdisp.kernels.layer_table import layer_table
 from surfdisp.kernels.rayleigh_count import (
     negative_eigenvalues,
     nudged_determinant,
@@ -12,7 +13,7 @@ from surfdisp.kernels.rayleigh_count import (
     rayleigh_count,
     rayleigh_counts,
 )
-from surfdisp.kernels.rayleigh_secular import rayleigh_secular, secular_table
+from surfdisp.kernels.rayleigh_secular import rayleigh_secular
 
 
 def random_model(rng):
@@ -27,11 +28,11 @@ def random_model(rng):
 def test_secular_function_is_positive_where_the_count_is_even(seed):
     rng = np.random.default_rng(seed)
     model = random_model(rng)
-    table = secular_table(*model)
+    table = layer_table(*model)
     omega = 2.0 * np.pi * rng.uniform(2.0, 60.0)
     counts = []
     for velocity in rng.uniform(0.4 * model[2].min(), 0.999 * model[2][-1], 50):
-        counts.append(rayleigh_count(omega, velocity, *model))
+        counts.append(rayleigh_count(omega, velocity, table))
         assert (rayleigh_secular(omega, velocity, table) > 0.0) == (counts[-1] % 2 == 0)
     assert min(counts) == 0
 
@@ -42,7 +43,7 @@ def test_count_never_falls_with_frequency_at_fixed_wavenumber(seed):
     model = random_model(rng)
     k = rng.uniform(0.05, 3.0)
     velocities = np.linspace(0.3 * model[2].min(), model[2][-1] * (1 - 1e-9), 400)
-    counts = rayleigh_counts(velocities * k, velocities, *model)
+    counts = rayleigh_counts(velocities * k, velocities, layer_table(*model))
     assert (np.diff(counts) >= 0).all()
     assert counts[0] == 0
 
@@ -54,17 +55,18 @@ def test_velocities_equal_to_those_of_the_medium_take_the_limit():
         np.array([100.0, 250.0, 400.0]),
         np.full(3, 1900.0),
     )
+    table = layer_table(*model)
     for velocity in (100.0, 250.0):
         for omega in (20.0, 200.0, 2000.0):
-            around = [rayleigh_count(omega, velocity * (1 + d), *model) for d in (-1e-9, 0.0, 1e-9)]
+            around = [rayleigh_count(omega, velocity * (1 + d), table) for d in (-1e-9, 0.0, 1e-9)]
             assert around[0] == around[1] == around[2]
 
 
 def test_a_layer_is_split_below_its_clamped_resonance():
-    assert piece_count(100.0, 2.0, 3.0, 100.0) == 1  # slower than vs
+    assert piece_count(100.0, 2.0, 3.0, 1e-4) == 1  # slower than vs
     omega, k, vs = 1000.0, 2.0, 100.0
     for thickness in (0.1, 1.0, 7.3):
-        pieces = piece_count(omega, k, thickness, vs)
+        pieces = piece_count(omega, k, thickness, vs**-2)
         assert vs**2 * (k**2 + (math.pi * pieces / thickness) ** 2) > omega**2
         if pieces > 1:
             assert vs**2 * (k**2 + (math.pi * (pieces - 1) / thickness) ** 2) <= omega**2
