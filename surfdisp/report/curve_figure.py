@@ -13,6 +13,7 @@ from ..core import DispersionCurve, Gather, Picks
 from ..core.checks import FloatArray
 from .axes import frequency_scale
 from .palette import FORWARD, HAIR, INK, REVERSE, finish, sheet, styled
+from .panels import legend_below
 from .words import metres, printable, shortened
 
 MARKS = "osD^vP"
@@ -47,7 +48,7 @@ def picks_over_curve(
     below.set_ylim(-1.08 * reach, 1.08 * reach)
     for axes in (above, below):
         finish(axes)
-    figure.legend(*above.get_legend_handles_labels(), loc="outside right upper")
+    legend_below(figure, [above], columns=3)
     return figure
 
 
@@ -61,7 +62,7 @@ def _curve(axes: Axes, curve: DispersionCurve) -> None:
 
 def _label(picks: Picks, gather: Gather | None) -> str:
     source = "" if gather is None else f", {metres(gather.source)} m"
-    return f"{shortened(printable(picks.name), 24)}{source}"
+    return f"{shortened(printable(picks.name), 26)}{source}"
 
 
 def _style(index: int, gather: Gather | None) -> dict[str, Any]:

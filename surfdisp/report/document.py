@@ -108,9 +108,12 @@ def _outcome(result: SurveyResult) -> str:
 
 
 def _closing(result: SurveyResult) -> Iterator[Block]:
-    warnings, _, _ = sorted_notes(result)
+    in_records = tuple(text for record in result.records for text in (record.reason, *record.flags) if text)
+    warnings = [warning for warning in sorted_notes(result)[0] if not warning.endswith(in_records)]
     yield heading("Warnings")
-    yield bullets(warnings, WARNING_LINES, "summary.json") if warnings else paragraph("None.")
+    if in_records:
+        yield paragraph("What was doubtful about single records stands with them, on the first pages.")
+    yield bullets(warnings, WARNING_LINES, "summary.json") if warnings else paragraph("No others.")
     yield heading("Cautions")
     yield bullets(CAUTIONS, len(CAUTIONS), "")
     yield heading("Methods and their sources")

@@ -71,8 +71,13 @@ def _earth_rows(earth: LayeredEarth, resolution: Sequence[float]) -> list[list[s
         earth.depth, earth.thickness, earth.vs, earth.vp, poisson, earth.density, resolution, strict=True
     )
     return [
-        [number(depth), "half-space" if np.isinf(thickness) else number(thickness), *map(number, others)]
-        for depth, thickness, *others in rows
+        [
+            number(depth),
+            "half-space" if np.isinf(thickness) else number(thickness),
+            *map(number, others),
+            f"{decided:.2f}",
+        ]
+        for depth, thickness, *others, decided in rows
     ]
 
 

@@ -11,7 +11,8 @@ from .blocks import NUMBER, TEXT, WIDE, Block, bullets, figures_named, heading, 
 from .words import metres, number, printable, shortened, without_file
 
 RECORD_ROWS = 20
-FLAG_LINES = 6
+FLAG_LINES = 10
+FILES_NAMED = 4
 SETTING_LINES = 70
 
 RECORD_COLUMNS = (
@@ -65,13 +66,23 @@ def records(table_of: Sequence[Record]) -> Iterator[Block]:
     yield table(RECORD_COLUMNS, [_record_row(record) for record in table_of[:RECORD_ROWS]])
     if len(table_of) > RECORD_ROWS:
         yield paragraph(f"{len(table_of) - RECORD_ROWS} more records are listed in summary.json.")
-    flags = [
-        f"{printable(record.file)}: {without_file(flag, record.file)}"
-        for record in table_of
-        for flag in record.flags
-    ]
+    flags = _files_by_flag(table_of)
     if flags:
         yield bullets(flags, FLAG_LINES, "project.h5")
+
+
+def _files_by_flag(records: Sequence[Record]) -> list[str]:
+    """Return each flag once, with the files that carry it."""
+    files: dict[str, list[str]] = {}
+    for record in records:
+        for flag in record.flags:
+            files.setdefault(without_file(flag, record.file), []).append(printable(record.file))
+    return [f"{_few(names)}: {flag}" for flag, names in files.items()]
+
+
+def _few(names: Sequence[str]) -> str:
+    more = f" and {len(names) - FILES_NAMED} more" if len(names) > FILES_NAMED else ""
+    return ", ".join(names[:FILES_NAMED]) + more
 
 
 def _record_row(record: Record) -> list[str]:

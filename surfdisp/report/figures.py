@@ -6,7 +6,9 @@ import os
 from collections.abc import Callable, Iterator
 from functools import partial
 from pathlib import Path
+from typing import Any
 
+from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.figure import Figure
 
 from ..core import InversionResult, SurveyResult
@@ -52,14 +54,20 @@ def write_figures(folder: str | os.PathLike[str], result: SurveyResult) -> list[
     """Write every figure as PNG into the existing `folder`; return the names of the files."""
     names = []
     for name, make in figure_makers(result):
-        make().savefig(
-            Path(folder) / f"{name}.png",
-            dpi=RESOLUTION,
-            metadata={"Software": None},
-            pil_kwargs={"compress_level": 3},  # half the time for a tenth more bytes
-        )
+        save_figure(make(), Path(folder) / f"{name}.png")
         names.append(f"{name}.png")
     return names
+
+
+def save_figure(figure: Figure, path: Path) -> None:
+    """Write one figure as PNG: drawn once, where `Figure.savefig` draws a first time for the layout."""
+    figure.set_dpi(RESOLUTION)
+    canvas: Any = FigureCanvasAgg(figure)
+    canvas.print_png(
+        path,
+        metadata={"Software": None},
+        pil_kwargs={"compress_level": 3},  # half the time for a tenth more bytes
+    )
 
 
 def _sheets(kind: str, count: int) -> Iterator[tuple[str, slice]]:

@@ -67,8 +67,8 @@ def image_with_picks(
             zorder=4,
         )  # fmt: skip
     _frame(axes, view)
-    title = f"{image.shots} shots stacked" if image.shots > 1 else ""
-    axes.set_title(", ".join(filter(None, [shortened(printable(image.name), 60), title])))
+    stack = f"{image.shots} shots stacked: " if image.shots > 1 else ""
+    axes.set_title(f"{stack}{shortened(printable(image.name), 60)}")
     axes.set_xlabel(FREQUENCY)
     axes.set_ylabel(VELOCITY)
     _power_scale(figure, [axes])

@@ -7,7 +7,7 @@ from collections.abc import Iterator
 from pathlib import Path
 
 from ..core import InputError, Picks, SurveyResult
-from .figures import RESOLUTION
+from .figures import save_figure
 from .image_figure import shot_images
 from .records_text import records_text
 from .words import number, printable
@@ -24,7 +24,7 @@ def write_look(path: str | os.PathLike[str], result: SurveyResult) -> str:
     path = Path(path)
     figure = shot_images(result.images, result.picks)
     try:
-        figure.savefig(path, dpi=RESOLUTION, format="png", metadata={"Software": None})
+        save_figure(figure, path)
     except OSError as error:
         raise InputError(f"{path}: the picture cannot be written: {error.strerror}") from error
     lines = [records_text(result.records), ""]

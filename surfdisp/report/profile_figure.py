@@ -64,6 +64,7 @@ def shear_velocity_profile(
     main.annotate(
         f"resolved to {number(site.resolved_depth)} m", (1.0, site.resolved_depth), (-2, -3),
         xycoords=("axes fraction", "data"), textcoords="offset points", ha="right", va="top",
+        bbox={"facecolor": "white", "edgecolor": "none", "alpha": 0.7, "pad": 1.0},
     )  # fmt: skip
     return figure
 

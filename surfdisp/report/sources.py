@@ -11,14 +11,15 @@ NEAR_FIELD = (
     "Near field by the distance of the array centre in wavelengths: Yoon & Rix 2009, J. Geotech. Geoenviron. "
     "Eng. 135."
 )
-CURVE = (
-    "Picks of several shots combined in logarithmic bins: after Olafsdottir et al. 2018, Soil Dyn. Earthq. "
-    "Eng. 113; the standard deviation is the scatter itself."
-)
+LONGEST = "Longest wavelength in lengths of the array: Park & Carnevale 2010, GeoFlorida, ASCE."
 FORWARD = (
     "Phase velocities from the dynamic stiffness of layered ground: Kausel & Roësset 1981, Bull. Seismol. "
     "Soc. Am. 71; certified mode count: Wittrick & Williams 1971, Q. J. Mech. Appl. Math. 24; fast secular "
     "function: Buchen & Ben-Hador 1996, Geophys. J. Int. 124."
+)
+INVERSION = (
+    "Smoothest earth that fits to the noise: Constable, Parker & Constable 1987, Geophysics 52; layerings by "
+    "a constant ratio: Cox & Teague 2016, Geophys. J. Int. 207."
 )
 DEPTH = (
     "Resolved depth as half the longest wavelength: common practice, see Foti et al. 2018, Bull. Earthq. "
@@ -34,8 +35,7 @@ CLASSES = "Site classes: ASCE 7-22, Table 20.2-1; ASCE 7-16, Table 20.3-1; EN 19
 def sources(result: SurveyResult) -> Sequence[str]:
     """Return one sentence per method that the result rests on."""
     used = [IMAGE] if result.images else []
-    used += [NEAR_FIELD] if result.picks else []
-    used += [CURVE] if result.curve is not None else []
-    used += [FORWARD, DEPTH] if result.inversion is not None else []
+    used += [NEAR_FIELD, LONGEST] if result.picks else []
+    used += [FORWARD, INVERSION, DEPTH] if result.inversion is not None else []
     used += [CHECK, CLASSES] if result.site is not None else []
     return used or ["None was applied: no record could be used."]

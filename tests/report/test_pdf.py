@@ -42,7 +42,7 @@ def test_the_report_says_what_was_found_in_three_to_six_pages(tmp_path, survey, 
         "Of 7 field files 6 were used",
         "the file ends in trace 7 of 24",
         "1010101010",  # digest of the first file
-        "trace 9 has reversed polarity",
+        "1001.dat: trace 9 has reversed polarity",
         "24 vertical receivers from 0 to 46 m",
         "minimum_frequency_hz = 4.0",
         "28 points from 8 to 55 Hz",
@@ -88,7 +88,7 @@ def test_texts_of_others_appear_as_they_are(tmp_path, survey, figures, hostile):
         survey,
         title=hostile,
         records=(*survey.records[:-1], record),
-        warnings=(hostile,),
+        warnings=(hostile + "?",),
         settings=f"title = '{hostile}'",
         curve=dataclasses.replace(survey.curve, notes=(hostile + "!",)),
     )
