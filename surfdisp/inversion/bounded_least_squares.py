@@ -23,6 +23,7 @@ FIRST_DAMPING = 1e-3
 LARGEST_DAMPING = 1e12
 LEAST_GAIN = 1e-4
 """Share of the predicted decrease that a step must reach."""
+LEVEL_STEPS = 4
 
 
 @dataclass(frozen=True)
@@ -73,7 +74,8 @@ def minimise(
     start, lower, upper : array (n_unknowns,)
         The start is moved inside the bounds.
     tolerance : float
-        The search has converged when a full step promises to lower the cost by less than this share of it.
+        The search has converged when a full step promises to lower the cost by less than this share of it, or
+        the last four steps together did not lower it by more.
     longest_step : float
         No unknown moves further in one step.
     most_iterations : int
@@ -89,6 +91,8 @@ def minimise(
         promise = _promise(J, r, free)
         if promise <= tolerance * costs[-1]:
             return Minimum(x, r, J, tuple(costs), True, "converged")
+        if len(costs) > LEVEL_STEPS and costs[-1 - LEVEL_STEPS] - costs[-1] <= tolerance * costs[-1]:
+            return Minimum(x, r, J, tuple(costs), True, "converged: the cost is level")
         if len(costs) > most_iterations:
             return Minimum(x, r, J, tuple(costs), False, f"stopped after {most_iterations} iterations")
         while True:  # until a step lowers the cost

@@ -17,13 +17,15 @@ PRIOR_WANDER = 0.5
 """Prior standard deviation of ln Vs over one e-fold of depth; what lies below the data errs by as much."""
 POINTS_PER_OCTAVE = 8
 """Errors of picks nearer than this count as one: they come from the same records, smoothly in frequency."""
-POISSON_ERROR = 0.07
+POISSON_ERROR = 0.06
 """Standard deviation of the assumed Poisson's ratio."""
-DENSITY_TREND_ERROR = 0.05
+DENSITY_TREND_ERROR = 0.06
 """Standard deviation of the relative density change over one e-fold of depth, beside the relation's own."""
 LEAST_POISSON_RATIO, LARGEST_POISSON_RATIO = 0.05, 0.49
-LARGEST_RATIO = 3.0
-"""Limit of a draw's weight, so that no single earth decides a percentile."""
+LEAST_RATIO, LARGEST_RATIO = 1e-3, 3.0
+"""Limits of a draw's weight: below the first it is dropped; no single earth shall decide a percentile."""
+LARGEST_MEND = 3.0
+"""Largest miss of the linearisation that is mended, in sigma; where a mode is lost it tells nothing."""
 
 
 @dataclass(frozen=True)
@@ -33,8 +35,8 @@ class Spread:
     Parameters
     ----------
     fit : Fit
-    jacobian : array (n_points, n_unknowns + 2)
-        Of the residuals.
+    residuals, jacobian : array (n_points,), (n_points, n_unknowns + 2)
+        At the fit.
     share : float
         What one squared residual counts: the share of independent points, over the noise that the misfit
         shows where that exceeds the stated one.
@@ -43,6 +45,7 @@ class Spread:
     """
 
     fit: Fit
+    residuals: FloatArray
     jacobian: FloatArray
     share: float
     precision: FloatArray
@@ -59,7 +62,7 @@ class Spread:
         precision[:-2, :-2] += rows.T @ rows
         precision[-2, -2] += POISSON_ERROR**-2
         precision[-1, -1] += DENSITY_TREND_ERROR**-2
-        return cls(fit, jacobian, share, precision)
+        return cls(fit, fit.misfit.residuals(fit.ln_vs), jacobian, share, precision)
 
     @property
     def resolution(self) -> FloatArray:
@@ -68,25 +71,35 @@ class Spread:
         return np.diag(np.linalg.solve(self.precision[:-2, :-2], data)).copy()
 
     def draw(
-        self, count: int, lower: FloatArray, upper: FloatArray, random: np.random.Generator
+        self, count: int, lower: float, upper: float, random: np.random.Generator
     ) -> tuple[list[LayeredEarth], FloatArray]:
-        """Return `count` earths cut at the bounds of ln Vs, and their weights, which sum to 1.
+        """Return the fit and the useful ones of `count` draws within the bounds of ln Vs, and their weights.
 
-        A draw is weighted by the ratio of its likelihood to the linearised one it was drawn by, at most 3.
+        A draw is weighted by the ratio of its likelihood to the linearised one it was drawn by, at most 3, so
+        that draws which do not fit drop out. The weights sum to 1.
         """
         factor = np.linalg.cholesky(self.precision)
         steps = np.linalg.solve(factor.T, random.standard_normal((len(factor), count))).T
-        earths, weights = [], np.empty(count)
-        at_fit = self.fit.misfit.residuals(self.fit.ln_vs)
-        for index, step in enumerate(steps):
-            ln_vs = np.clip(self.fit.ln_vs + step[:-2], lower, upper)
-            member = _with_assumptions(self.fit.misfit, *step[-2:])
-            linear = at_fit + self.jacobian @ step
-            actual = member.residuals(ln_vs)
-            weights[index] = np.exp(-0.5 * self.share * (actual @ actual - linear @ linear))
-            earths.append(member.earth(ln_vs))
-        weights = np.minimum(weights, LARGEST_RATIO)
+        fit = self.fit
+        earths, ratios = [fit.misfit.earth(fit.ln_vs)], [1.0]
+        for step in steps:
+            member, ln_vs, ratio = self._corrected(step, lower, upper)
+            if ratio > LEAST_RATIO:
+                earths.append(member.earth(ln_vs))
+                ratios.append(min(ratio, LARGEST_RATIO))
+        weights = np.array(ratios)
         return earths, weights / weights.sum()
+
+    def _corrected(self, step: FloatArray, lower: float, upper: float) -> tuple[Misfit, FloatArray, float]:
+        """Take a step, mend once what the linearisation missed, and return likelihood over linearised one."""
+        fit = self.fit
+        member = _with_assumptions(fit.misfit, *step[-2:])
+        linear = self.residuals + self.jacobian @ step
+        missed = np.clip(member.residuals(fit.ln_vs + step[:-2]) - linear, -LARGEST_MEND, LARGEST_MEND)
+        mend = np.linalg.solve(self.precision[:-2, :-2], self.share * fit.jacobian.T @ missed)
+        ln_vs = np.clip(fit.ln_vs + step[:-2] - mend, lower, upper)
+        actual = member.residuals(ln_vs)
+        return member, ln_vs, float(np.exp(-0.5 * self.share * (actual @ actual - linear @ linear)))
 
 
 def _with_assumptions(misfit: Misfit, poisson_step: float, density_trend: float) -> Misfit:

@@ -6,7 +6,6 @@ import math
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
 from ..core import LayeredEarth
 from ..core.checks import FloatArray, finite, positive
@@ -59,20 +58,21 @@ class Ground:
         """Vp/Vs of Poisson's ratio."""
         return math.sqrt((2.0 - 2.0 * self.poisson_ratio) / (1.0 - 2.0 * self.poisson_ratio))
 
-    @property
-    def velocity_ratio_slope(self) -> float:
-        """Derivative of Vp/Vs by Poisson's ratio."""
-        return 1.0 / (self.velocity_ratio * (1.0 - 2.0 * self.poisson_ratio) ** 2)
-
-    def floored(self, vs: FloatArray, layering: Layering) -> NDArray[np.bool_]:
-        """Tell which layers take their Vp from the water, not from Poisson's ratio, (n_layers,)."""
-        wet = layering.top >= self.water_table_depth - 1e-6  # a layering is split at the water table
-        return wet & (self.saturated_vp > self.velocity_ratio * vs)
-
     def compression(self, vs: FloatArray, layering: Layering) -> tuple[FloatArray, FloatArray]:
-        """Return Vp [m/s] and dVp/dVs of every layer, (n_layers,) each."""
-        ratio, floored = self.velocity_ratio, self.floored(vs, layering)
-        return np.where(floored, self.saturated_vp, ratio * vs), np.where(floored, 0.0, ratio)
+        """Return Vp [m/s] and dVp/dVs of every layer, (n_layers,) each.
+
+        Water adds its stiffness to that of the frame (Gassmann 1951): Vp^2 = saturated_vp^2 + (ratio Vs)^2.
+        """
+        wet = layering.top >= self.water_table_depth - 1e-6  # a layering is split at the water table
+        water = np.where(wet, self.saturated_vp, 0.0)
+        vp = np.hypot(water, self.velocity_ratio * vs)
+        return vp, self.velocity_ratio**2 * vs / vp
+
+    def compression_by_poisson_ratio(self, vs: FloatArray, layering: Layering) -> FloatArray:
+        """Return the derivative of Vp by Poisson's ratio, (n_layers,) [m/s]."""
+        vp, _ = self.compression(vs, layering)
+        slope: FloatArray = vs**2 / (vp * (1.0 - 2.0 * self.poisson_ratio) ** 2)
+        return slope
 
     def densities(self, vs: FloatArray, layering: Layering) -> tuple[FloatArray, FloatArray]:
         """Return density [kg/m3] and its derivative by Vs of every layer, (n_layers,) each.

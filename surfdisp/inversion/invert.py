@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from ..core import SILENT, DispersionCurve, Ensemble, InversionResult, LayeredEarth, Progress, StepError
-from ..core.checks import FloatArray, positive
+from ..core.checks import FloatArray, finite, positive
 from ..core.errors import InputError
 from .ensemble import Spread, likelihoods
 from .ground import Ground
@@ -20,7 +20,7 @@ from .occam import TARGET, WANDERS, Fit, smoothest_fit
 from .smoothness import Smoothness
 from .starting import starting_ln_vs
 
-LAYERING_RATIOS = (1.2, 1.5, 2.0)
+LAYERING_RATIOS = (1.25, 1.5, 2.0)
 FEWEST_POINTS = 4
 BEYOND_HALF_SPACING = "beyond half the spacing's wavenumber"
 """Flag of points beyond 1 / (2 spacing), as the picking spells it."""
@@ -28,8 +28,10 @@ RESOLVED_WAVELENGTHS = 0.5
 """Resolved depth in longest wavelengths, common practice."""
 LOWER_BOUND, UPPER_BOUND = 0.5, 4.0
 """Bounds of Vs in slowest and fastest phase velocities of the curve."""
-SATURATED_WEIGHT = 0.25
+SATURATED_WEIGHT = 0.5
 """Weight of saturated ground where nobody says whether there is a water table."""
+DEPTH_EXPONENT = 0.25
+"""Of Vs with depth: stiffness of soil goes with the root of effective stress (Hardin & Richart 1963)."""
 SATURATED_DEPTHS = (2.0, 10.0)
 """Water tables tried then [m], one per layering, log-spaced between these."""
 
@@ -55,8 +57,9 @@ def invert(
     density: float | None = None,
     vs_bounds: tuple[float, float] | None = None,
     allow_decrease: bool = True,
+    depth_exponent: float = DEPTH_EXPONENT,
     start: LayeredEarth | None = None,
-    n_earths: int = 600,
+    n_earths: int = 500,
     seed: int = 0,
     progress: Progress = SILENT,
 ) -> InversionResult:
@@ -90,11 +93,15 @@ def invert(
     vs_bounds : tuple of float, optional
         Least and greatest Vs [m/s]; where not given 0.5 times the slowest and 4 times the fastest velocity.
     allow_decrease : bool
-        Whether Vs may fall with depth; if not, the smoothness resists a fall ten times more than a rise.
+        Whether Vs may fall with depth; if not, the smoothness of the fits resists a fall, which only strong
+        data overcome.
+    depth_exponent : float
+        Of the power of depth that Vs follows where the data say nothing, above all below them; 0 extends at
+        constant velocity.
     start : LayeredEarth, optional
         Starting velocities; where not given they are read off the curve.
     n_earths : int
-        Size of the ensemble.
+        Number of draws; those that turn out not to fit are left out of the ensemble.
     seed : int
         Of the draws.
     progress : Progress
@@ -125,11 +132,13 @@ def invert(
     water = np.inf if water_table_depth is None else water_table_depth
     trials = _trials(made, Ground(poisson_ratio, water, saturated_vp, density), water_table_depth is not None)
     bounds = _bounds(curve, vs_bounds)
+    exponent = finite(depth_exponent, "depth_exponent")
 
     progress.start("inverting", 2 * len(trials))
     fits = []
     for trial in trials:
-        fits.append(_fit(Misfit(curve, trial.ground, trial.layering), start, bounds, allow_decrease))
+        misfit = Misfit(curve, trial.ground, trial.layering)
+        fits.append(_fit(misfit, start, bounds, exponent, allow_decrease))
         progress.advance()
     best = min(fits[: len(made)], key=_rank)
     weights = likelihoods(fits, curve) * [trial.weight for trial in trials]
@@ -153,6 +162,7 @@ def invert(
         bounds=bounds,
         water_known=water_table_depth is not None,
         allow_decrease=allow_decrease,
+        depth_exponent=exponent,
         seed=seed,
     )
     return replace(found, notes=notes(found, best, fits, assumed))
@@ -203,7 +213,11 @@ def _trials(made: Sequence[Layering], ground: Ground, water_known: bool) -> list
 
 
 def _fit(
-    misfit: Misfit, start: LayeredEarth | None, bounds: tuple[float, float], allow_decrease: bool
+    misfit: Misfit,
+    start: LayeredEarth | None,
+    bounds: tuple[float, float],
+    exponent: float,
+    allow_decrease: bool,
 ) -> Fit:
     depth = misfit.layering.unknown_depth
     if start is None:
@@ -211,7 +225,7 @@ def _fit(
     else:
         ln_vs = np.log(start.vs[np.searchsorted(start.depth, depth, side="right") - 1])
     lower, upper = (np.full(depth.size, np.log(bound)) for bound in bounds)
-    prior = Smoothness(depth, float(ln_vs.mean()), WANDERS[0], allow_decrease)
+    prior = Smoothness(depth, float(ln_vs.mean()), WANDERS[0], exponent, allow_decrease)
     return smoothest_fit(misfit, prior, ln_vs, lower, upper)
 
 

@@ -61,8 +61,7 @@ class Misfit:
         """Return the derivatives of the residuals by Poisson's ratio and density trend, (n_points, 2)."""
         earth, ground, layering = self.earth(ln_vs), self.ground, self.layering
         _, by = phase_velocity_and_sensitivity(earth, self.curve.frequency, mode=self.curve.mode or 0)
-        free = ~ground.floored(earth.vs, layering)
-        vp_slope = np.where(free, ground.velocity_ratio_slope * earth.vs, 0.0)
+        vp_slope = ground.compression_by_poisson_ratio(earth.vs, layering)
         density_slope = ground.density_by_trend(earth.vs, layering)
         slopes = np.stack([by.vp @ vp_slope, by.density @ density_slope], axis=1) / self.curve.sigma[:, None]
         return np.nan_to_num(slopes, nan=0.0)

@@ -29,6 +29,7 @@ class Assumptions:
     bounds: tuple[float, float]
     water_known: bool
     allow_decrease: bool
+    depth_exponent: float
     seed: int
 
 
@@ -92,8 +93,8 @@ def _ground(best: Fit, fits: Sequence[Fit], assumed: Assumptions) -> list[str]:
     poisson = f"Poisson's ratio {ground.poisson_ratio:.2f} +- {POISSON_ERROR:.2f}"
     if np.isfinite(ground.water_table_depth):
         vp = (
-            f"Vp follows from {poisson} above the water table at {ground.water_table_depth:.1f} m (given) "
-            f"and is at least {ground.saturated_vp:.0f} m/s below it."
+            f"Vp follows from {poisson} above the water table at {ground.water_table_depth:.1f} m (given); "
+            f"below it water adds its stiffness, Vp^2 = {ground.saturated_vp:.0f}^2 + Vp^2 (Gassmann 1951)."
         )
     else:
         vp = f"Vp follows from {poisson} at all depths."
@@ -116,8 +117,9 @@ def _water(fits: Sequence[Fit], saturated_vp: float) -> str:
         for fit, change in zip(wet, slow, strict=True)
     )
     return (
-        "No water table was given: the best earth is dry, and part of the ensemble is saturated (Vp at least "
-        f"{saturated_vp:.0f} m/s); Vs30 changes by {changes}. Give its depth to narrow the ranges."
+        "No water table was given: the best earth is dry, and half of the ensemble's weight is on saturated "
+        f"earths (Vp above {saturated_vp:.0f} m/s); Vs30 changes by {changes}. "
+        "Its depth would narrow the ranges."
     )
 
 
@@ -135,7 +137,9 @@ def _fit(result: InversionResult, best: Fit, assumed: Assumptions) -> list[str]:
         f"The search starts from Vs = {VELOCITY_FACTOR} c at depth wavelength / {WAVELENGTHS_PER_DEPTH} "
         f"(after Tokimatsu et al. 1992) unless given, and stays between {low:.0f} and {high:.0f} m/s.",
         f"{at_bound} layer(s) of the best earth stand at a bound of Vs." if at_bound else "",
-        "Vs may fall with depth." if assumed.allow_decrease else "Vs is held back from falling with depth.",
+        "Vs may fall with depth."
+        if assumed.allow_decrease
+        else "Vs is held back from falling with depth in the fits, not in the ranges.",
         f"The best earth does not fit to the noise (chi-square {best.chi_square:.2f}): sigma is too small, "
         "or the ground is not layered flat, or the ridge is not the mode assumed; the ranges are widened."
         if best.chi_square > TARGET
@@ -153,9 +157,15 @@ def _fit(result: InversionResult, best: Fit, assumed: Assumptions) -> list[str]:
 def _ranges(result: InversionResult, assumed: Assumptions) -> list[str]:
     effective = 1.0 / float(np.sum(result.ensemble.weights**2))
     return [
-        f"Ranges come from {len(result.ensemble)} draws (seed {assumed.seed}, {effective:.0f} effective) "
-        "around all fits: the curve's sigma, the layerings, the assumed Poisson's ratio and density; "
-        "linearised, each draw weighted by its true fit.",
-        "Below the resolved depth the earths continue at constant velocity, with an error of ln Vs of "
-        f"{PRIOR_WANDER} per e-fold of depth; the same prior holds above, where the data override it.",
+        f"Ranges come from {len(result.ensemble)} earths (seed {assumed.seed}, {effective:.0f} effective) "
+        "drawn around all fits from the linearised problem, and weighted by their true fit: they hold the "
+        "curve's sigma, the layerings, the assumed Vp and density.",
+        f"Below the resolved depth the earths continue {_extension(assumed.depth_exponent)}, with an error "
+        f"of ln Vs of {PRIOR_WANDER} per e-fold of depth; above it the same prior yields to the data.",
     ]
+
+
+def _extension(exponent: float) -> str:
+    if exponent == 0.0:
+        return "at constant velocity"
+    return f"as depth to the power {exponent:g} (stiffness with the root of stress, Hardin & Richart 1963)"

@@ -15,6 +15,10 @@ WANDERS = tuple(0.1 * 2.0 ** (index / 2.0) for index in range(9))
 """Standard deviations of ln Vs per e-fold of depth that are tried, smoothest first: 0.1 to 1.6."""
 TARGET = 1.0
 """Chi-square that counts as a fit to the noise."""
+TOLERANCE = 1e-3
+"""Of the cost: less than the noise can tell apart."""
+MOST_ITERATIONS = 30
+"""In one search; each starts from the result of the next smoother one."""
 ENOUGH = 1.05
 """Where none reaches the target: the smoothest within this factor of the least chi-square."""
 
@@ -97,4 +101,6 @@ def _search(
     def residuals(ln_vs: FloatArray) -> FloatArray:
         return np.append(misfit.residuals(ln_vs), prior.residuals(ln_vs))
 
-    return minimise(linearised, residuals, start, lower, upper, tolerance=1e-4)
+    return minimise(
+        linearised, residuals, start, lower, upper, tolerance=TOLERANCE, most_iterations=MOST_ITERATIONS
+    )

@@ -1,9 +1,10 @@
-"""The prior: ln Vs wanders with ln depth, and how far it may wander is the smoothness.
+"""The prior: Vs follows a power of depth, and how far it may wander from it is the smoothness.
 
-Steps between neighbouring unknowns have mean 0 and variance wander^2 x ln(depth ratio): a Brownian motion in
-ln depth, so that the same ground is as probable in fine layers as in coarse ones. Below the data the same
-wander is what the extension errs by. Least squares with it is the first-difference roughness of Constable,
-Parker & Constable (1987), eq. 2, in ln depth.
+Steps of ln Vs between neighbouring unknowns have mean exponent x ln(depth ratio) and variance
+wander^2 x ln(depth ratio): a Brownian motion in ln depth about a power law, so that the same ground is as
+probable in fine layers as in coarse ones. Below the data the power law is the extension, and the wander what
+it errs by. Least squares with it is the first-difference roughness of Constable, Parker & Constable (1987) in
+ln depth, on what departs from the power law.
 """
 
 from __future__ import annotations
@@ -16,8 +17,8 @@ from ..core.checks import FloatArray
 
 LEVEL = 1.0
 """Standard deviation of the mean of ln Vs about that of the starting model: a factor of 2.7."""
-STIFFNESS_OF_DECREASE = 10.0
-"""How many times less a velocity may fall than rise where a decrease with depth is not wanted."""
+UNWANTED_FALL = 0.02
+"""Standard deviation of a fall of ln Vs over one e-fold of depth where a decrease is not wanted."""
 
 
 @dataclass(frozen=True)
@@ -32,6 +33,8 @@ class Smoothness:
         Prior mean of the mean of ln Vs.
     wander : float
         Standard deviation of ln Vs over one e-fold of depth.
+    exponent : float
+        Of the power of depth that Vs follows.
     decrease : bool
         Whether velocity may fall with depth as easily as it rises.
     """
@@ -39,11 +42,12 @@ class Smoothness:
     depth: FloatArray
     level: float
     wander: float
+    exponent: float = 0.0
     decrease: bool = True
 
     def residuals(self, ln_vs: FloatArray) -> FloatArray:
         """Return the rows at `ln_vs`, (n_unknowns,)."""
-        steps = np.diff(ln_vs) * self._weights(ln_vs)
+        steps = np.diff(ln_vs) * self._weights(ln_vs) - self.exponent * self._spacing / self.wander
         return np.append(steps, (ln_vs.mean() - self.level) / LEVEL)
 
     def jacobian(self, ln_vs: FloatArray) -> FloatArray:
@@ -56,8 +60,13 @@ class Smoothness:
         rows[-1] = 1.0 / (count * LEVEL)
         return rows
 
+    @property
+    def _spacing(self) -> FloatArray:
+        """Square root of the ln depth between neighbours, (n_unknowns - 1,)."""
+        spacing: FloatArray = np.sqrt(np.diff(np.log(self.depth)))
+        return spacing
+
     def _weights(self, ln_vs: FloatArray) -> FloatArray:
-        weights: FloatArray = 1.0 / (self.wander * np.sqrt(np.diff(np.log(self.depth))))
-        if self.decrease:
-            return weights
-        return np.where(np.diff(ln_vs) < 0.0, STIFFNESS_OF_DECREASE * weights, weights)
+        unwanted = (np.diff(ln_vs) < 0.0) & (not self.decrease)
+        weights: FloatArray = 1.0 / (np.where(unwanted, UNWANTED_FALL, self.wander) * self._spacing)
+        return weights

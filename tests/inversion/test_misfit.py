@@ -49,7 +49,7 @@ def test_taylor_remainder_of_the_residuals_is_of_second_order(water, density):
 @pytest.mark.parametrize("decrease", [True, False])
 def test_taylor_remainder_of_the_whole_objective_is_of_second_order(decrease):
     problem = misfit()
-    prior = Smoothness(problem.layering.unknown_depth, 5.0, 0.3, decrease)
+    prior = Smoothness(problem.layering.unknown_depth, 5.0, 0.3, 0.25, decrease)
     direction = np.array([0.3, -0.7, 0.5, 0.4])
 
     def objective(ln_vs):

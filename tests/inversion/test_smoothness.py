@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from surfdisp.inversion.smoothness import LEVEL, STIFFNESS_OF_DECREASE, Smoothness
+from surfdisp.inversion.smoothness import LEVEL, UNWANTED_FALL, Smoothness
 
 DEPTH = np.array([1.0, 2.0, 4.0, 16.0])
 
@@ -36,8 +36,23 @@ def test_a_constant_at_the_level_costs_nothing_and_shifts_cost_only_the_level():
     np.testing.assert_allclose(prior.residuals(np.full(4, 5.5)), [0.0, 0.0, 0.0, 0.5 / LEVEL], atol=1e-15)
 
 
+def test_a_power_of_depth_costs_nothing_at_its_exponent():
+    law = 0.25 * np.log(DEPTH)
+    prior = Smoothness(DEPTH, float(law.mean()), 0.3, 0.25)
+    np.testing.assert_allclose(prior.residuals(law), 0.0, atol=1e-14)
+    flat = prior.residuals(np.full(4, law.mean()))
+    np.testing.assert_allclose(flat[:3], -0.25 * np.sqrt(np.log([2.0, 2.0, 4.0])) / 0.3)
+
+
+def test_rows_have_no_jump_where_a_rise_turns_into_an_unwanted_fall():
+    held = Smoothness(DEPTH, 5.0, 0.3, 0.25, decrease=False)
+    flat = np.full(4, 5.0)
+    tilt = np.array([0.0, 1e-9, 0.0, 0.0])
+    np.testing.assert_allclose(held.residuals(flat + tilt), held.residuals(flat - tilt), atol=1e-6)
+
+
 def test_a_fall_is_resisted_more_than_a_rise_where_not_wanted():
     free, held = Smoothness(DEPTH, 5.0, 0.3), Smoothness(DEPTH, 5.0, 0.3, decrease=False)
     profile = np.array([5.0, 5.2, 4.9, 5.3])
     ratio = held.residuals(profile)[:3] / free.residuals(profile)[:3]
-    np.testing.assert_allclose(ratio, [1.0, STIFFNESS_OF_DECREASE, 1.0])
+    np.testing.assert_allclose(ratio, [1.0, 0.3 / UNWANTED_FALL, 1.0])
