@@ -59,9 +59,10 @@ def check_headers(shot: LocatedShot, sound: NDArray[np.int64]) -> Verdict:
     if len(sound) < LEAST_TRACES:
         return Verdict(shot.gather, (), None)
     doubts, contradicted = _check_source(select_traces(shot.gather, sound), shot.labels)
+    if contradicted and shot.from_table:
+        return Verdict(shot.gather, tuple(doubts), None)
     if contradicted:
-        reason = None if shot.from_table else f"{doubts[0]}; give the position in shots.csv"
-        return Verdict(shot.gather, tuple(doubts), reason)
+        return Verdict(shot.gather, (), f"{doubts[0]}; give the position in shots.csv")
     gather, flags = _check_delay(shot.gather, sound)
     return Verdict(gather, (*doubts, *flags, *_check_loudest(select_traces(gather, sound))), None)
 

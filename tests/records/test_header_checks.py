@@ -35,6 +35,7 @@ def test_a_source_that_the_arrivals_contradict_refuses_the_record(tmp_path, make
     where = "off the low end" if true < 0 else "off the high end" if true > 46 else "near 23 m"
     assert where in record.reason
     assert "shots.csv" in record.reason
+    assert record.flags == ()
 
 
 def test_a_shot_number_for_a_position_is_recognised(tmp_path, make_shot):
