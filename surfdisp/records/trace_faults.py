@@ -136,12 +136,12 @@ def _reversed(gather: Gather, ignored: frozenset[int]) -> tuple[set[int], FloatA
     for _ in range(len(data)):
         opposed = np.where(coherence <= limit, coherence, 0.0)
         if not np.any(opposed):
-            break
+            return turned, coherence
         worst = int(np.argmin(opposed))
         turned ^= {worst}
         data[worst] *= -1.0
         coherence = neighbour_coherence(dataclasses.replace(gather, data=data), ignored)
-    return turned, coherence
+    return set(), neighbour_coherence(gather, ignored)  # it never settles: nothing can be said
 
 
 def _loudest_over_median(gather: Gather) -> FloatArray:

@@ -266,6 +266,8 @@ def test_sac_keeps_half_a_microsecond(tmp_path):
     gather = read_gather(sac(tmp_path / "a.sac", DATA[0], 6.25e-5, dist=0.01))
     assert gather.interval == 6.25e-5
     assert gather.notes == ()
+    fine = read_gather(sac(tmp_path / "b.sac", DATA[0], 1.0 / 6000.0, dist=0.01))
+    assert fine.interval == pytest.approx(1.0 / 6000.0, rel=1e-6)
 
 
 def test_sac_latitudes_become_metres(tmp_path):
@@ -315,6 +317,14 @@ def test_a_table_replaces_source_off_line_elevation_and_delay(tmp_path):
     assert gather.delay == -0.03
     np.testing.assert_array_equal(gather.receivers, LINE)
     np.testing.assert_array_equal(gather.elevations, [1.0, 2.0, 3.0, 4.0])
+
+
+def test_a_source_in_the_table_counts_along_an_askew_line(tmp_path):
+    places = [tuple(np.array([1000.0, 500.0]) + x * np.array([0.6, 0.8])) for x in LINE]
+    path = seg2(tmp_path / "a.dat", receivers=places, source=(0.0, 0.0))
+    gather = read_gather(path, geometry=Geometry(shots={"a.dat": ShotGeometry(source=-6.0)}))
+    assert (gather.source, gather.source_off_line) == (-6.0, 0.0)
+    np.testing.assert_allclose(gather.offsets, LINE + 6.0)
 
 
 def test_a_table_of_another_length_is_refused(tmp_path):

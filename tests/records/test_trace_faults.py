@@ -65,10 +65,17 @@ def test_two_reversed_neighbours_are_told_from_the_good_ones_around_them(make_sh
     assert kinds(gather_of(data)) == dict.fromkeys(group, "reversed")
 
 
-def test_a_good_trace_turned_among_reversed_ones_is_turned_back(make_shot):
+@pytest.mark.parametrize("group", [[5, 8, 9], [14, 15, 17, 20]])
+def test_a_good_trace_turned_among_reversed_ones_is_turned_back(make_shot, group):
     data = make_shot(LINE, -4.0, noise=0.01)
-    data[[10, 12, 14]] *= -1.0
-    assert kinds(gather_of(data)) == dict.fromkeys([10, 12, 14], "reversed")
+    data[group] *= -1.0
+    assert kinds(gather_of(data)) == dict.fromkeys(group, "reversed")
+
+
+def test_where_turning_never_settles_nothing_is_said(make_shot):
+    data = make_shot(LINE, -4.0, noise=0.01)
+    data[[16, 17, 19, 20]] *= -1.0
+    assert kinds(gather_of(data)) == {}
 
 
 def test_a_lone_burst_is_not_called_noise(make_shot):
