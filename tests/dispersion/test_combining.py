@@ -74,6 +74,31 @@ def test_a_bin_needs_half_of_the_shots():
     assert curve.frequency.min() > 19.0
 
 
+def test_a_shot_with_few_accepted_frequencies_in_a_bin_does_not_count_there():
+    sparse = np.zeros(len(F), dtype=bool)
+    sparse[::6] = True
+    curve = combine_picks([picks(200.0), picks(230.0, accepted=sparse)])
+    assert np.all(curve.shots == 1)
+    np.testing.assert_allclose(curve.velocity, 200.0)
+
+
+def test_scatter_is_pooled_with_the_neighbouring_bins():
+    # the shots differ in the bin at 16 Hz only: its squares over the three degrees of freedom of three bins
+    bins = np.round(8.0 * np.log2(F))
+    other = np.where(bins == 32, 200.0 * np.exp(0.06), 200.0)
+    curve = combine_picks([picks(200.0), picks(other)], largest_scatter=1.0)
+    number = np.round(8.0 * np.log2(curve.frequency)).astype(int)
+    relative = (curve.sigma / curve.velocity)[(number >= 31) & (number <= 33)]
+    pooled = np.sqrt(2.0 * 0.03**2 / 3.0)
+    np.testing.assert_allclose(relative, np.hypot(pooled, 0.02), rtol=0.05)
+
+
+def test_the_less_certain_shot_counts_less():
+    curve = combine_picks([picks(200.0, sigma=0.02), picks(210.0, sigma=0.06)])
+    expected = np.exp(0.9 * np.log(200.0) + 0.1 * np.log(210.0))
+    np.testing.assert_allclose(curve.velocity, expected, rtol=1e-9)
+
+
 def test_near_field_picks_count_only_where_no_other_does():
     near = picks(180.0, reason=NEAR_FIELD, accepted=F < 30.0)
     far = picks(200.0, accepted=F > 20.0)
