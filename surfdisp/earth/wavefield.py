@@ -83,7 +83,8 @@ def synthesize(
     reference_frequency : float
         [Hz]
     tolerance : float
-        Largest error wanted, relative to the peak of each trace; between 1e-6 and 0.1.
+        Largest error wanted, relative to the peak of each trace, waves that would still come after the
+        record included; between 1e-6 and 0.1.
 
     Returns
     -------

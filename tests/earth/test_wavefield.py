@@ -102,6 +102,12 @@ def test_the_length_of_the_record_changes_nothing_within_it():
     assert largest_difference(short.data, long.data[:, :250]) < 1e-3
 
 
+def test_a_receiver_that_only_the_p_wave_reaches_in_time_is_as_accurate():
+    short = synthesize(TERRACE, [300.0], 0.5, 0.002)  # surface waves, 200 times as large, come after 0.6 s
+    long = synthesize(TERRACE, [300.0], 2.4, 0.002)
+    assert largest_difference(short.data, long.data[:, :250]) < 1e-3
+
+
 def test_splitting_a_layer_changes_nothing():
     split = earth_of(
         [2.0, 1.0, 2.0, 7.0],
@@ -187,6 +193,21 @@ def test_loss_takes_the_amplitude_that_its_quality_factor_says():
     spectra = [gather.data[0] @ np.exp(-2j * np.pi * frequency * gather.times) for gather in (plain, lossy)]
     decay = np.pi * frequency * offset / (quality * half_space_rayleigh_speed(400.0, 200.0))
     assert np.log(abs(spectra[0] / spectra[1])) == pytest.approx(decay, rel=0.01)
+
+
+def test_each_quality_factor_takes_from_its_own_wave():
+    frequency, offset, quality = 30.0, 150.0, 20.0
+    plain, compression, shear = (
+        synthesize(HALF_SPACE, [offset], 1.2, 0.001, reference_frequency=frequency, **loss)
+        for loss in ({}, {"qp": quality}, {"qs": quality})
+    )
+    first = plain.times < 0.6  # P after 0.375 s, S after 0.75 s
+    p, s = ([g.data[0, w] @ np.exp(-2j * np.pi * frequency * g.times[w]) for g in (plain, compression, shear)]
+            for w in (first, ~first))  # fmt: skip
+    decay = np.pi * frequency * offset / (quality * HALF_SPACE.vp[0])
+    assert np.log(abs(p[0] / p[1])) == pytest.approx(decay, rel=0.1)
+    assert abs(np.log(abs(p[0] / p[2]))) < 0.1 * decay
+    assert np.log(abs(s[0] / s[2])) > 5.0 * np.log(abs(s[0] / s[1])) > 0.0
 
 
 @pytest.mark.parametrize("frequency", [10.0, 20.0, 40.0])
