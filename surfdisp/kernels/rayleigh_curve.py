@@ -60,7 +60,8 @@ def remembered(trail: Array, known: int, log_omega: float, velocity: float, slop
     """Put a root at the head of the trail and return its new length."""
     known = min(known + 1, MEMORY)
     for i in range(known - 1, 0, -1):
-        trail[i] = trail[i - 1]
+        for column in range(3):
+            trail[i, column] = trail[i - 1, column]
     trail[0, LOG_OMEGA], trail[0, VELOCITY], trail[0, SLOPE] = log_omega, velocity, slope
     return known
 
@@ -158,12 +159,14 @@ def slowest_velocities(
     """
     table = layer_table(thickness, vp, vs, density)
     top = vs[-1] * (1.0 - TOP)
-    fastest = np.max(vs)
+    fastest = 0.0
+    for i in range(vs.size):
+        fastest = max(fastest, vs[i])
     slowest = velocity_floor(vp, vs, density)
     cleared = math.inf  # wavenumber above which the branch is known to lie above the frequency at hand
     trail = np.empty((MEMORY, 3))
-    known = 0
-    velocities = np.full(omega.size, math.nan)
+    known = int(np.int64(0))  # a literal 0 would be compiled for apart
+    velocities = np.empty(omega.size)
     for i in range(omega.size):
         if i > 0 and omega[i] == omega[i - 1]:
             velocities[i] = velocities[i - 1]
@@ -194,7 +197,7 @@ def slowest_velocities(
                 known = remembered(trail, known, log_omega, velocity, math.nan)
                 cleared = omega[i] / velocity
             else:
-                known = 0
+                known = int(np.int64(0))
                 cleared = min(cleared, omega[i] / top)
         velocities[i] = velocity
     return velocities

@@ -31,6 +31,10 @@ from .rayleigh_shape import rayleigh_shape
 Array = NDArray[np.float64]
 
 VS, VP, DENSITY, THICKNESS = range(4)  # rows of the derivatives
+STATIONARY = 1e-12  # group over phase velocity below which derivatives at fixed frequency do not exist
+
+Medium = tuple[float, float, float]  # vp, vs, density
+Work = tuple[float, float, float, float]
 
 
 @inlined
@@ -74,6 +78,71 @@ def integral_of_square(
     )
 
 
+@inlined
+def work_of_piece(faces: Array, i: int, h: float, omega: float, k: float, medium: Medium) -> Work:
+    """Return phi K_m phi of the piece between faces i and i + 1, for m = vs, vp, density and thickness."""
+    vp, vs, rho = medium
+    mu = rho * vs * vs
+    stiff = rho * vp * vp
+    inertia = rho * omega * omega
+    u0, w0, t0, s0 = faces[i, 0], faces[i, 1], faces[i, 2], faces[i, 3]
+    u1, w1, t1, s1 = faces[i + 1, 0], faces[i + 1, 1], faces[i + 1, 2], faces[i + 1, 3]
+    dilatation0 = (s0 + 2.0 * mu * k * u0) / stiff
+    dilatation1 = (s1 + 2.0 * mu * k * u1) / stiff
+    rotation0 = t0 / mu + 2.0 * k * w0
+    rotation1 = t1 / mu + 2.0 * k * w1
+    dilatations = integral_of_square(
+        dilatation0,
+        (k * mu * rotation0 - inertia * w0) / stiff,
+        dilatation1,
+        (k * mu * rotation1 - inertia * w1) / stiff,
+        k * k - inertia / stiff,
+        h,
+    )
+    rotations = integral_of_square(
+        rotation0,
+        (k * stiff * dilatation0 - inertia * u0) / mu,
+        rotation1,
+        (k * stiff * dilatation1 - inertia * u1) / mu,
+        k * k - inertia / mu,
+        h,
+    )
+    # the Hamiltonian at the face where the mode is smaller: there it is small, not a difference
+    if u0 * u0 + w0 * w0 < u1 * u1 + w1 * w1:
+        u, w, t, dilatation = u0, w0, t0, dilatation0
+    else:
+        u, w, t, dilatation = u1, w1, t1, dilatation1
+    slope_u = t / mu + k * w
+    slope_w = dilatation - k * u
+    hamiltonian = stiff * slope_w * slope_w + mu * slope_u * slope_u
+    hamiltonian -= (stiff * k * k - inertia) * u * u + (mu * k * k - inertia) * w * w
+    return (
+        2.0 * rho * vs * (rotations - 4.0 * k * (u1 * w1 - u0 * w0)),
+        2.0 * rho * vp * dilatations,
+        (t1 * u1 + s1 * w1 - t0 * u0 - s0 * w0) / rho,
+        -hamiltonian,
+    )
+
+
+@inlined
+def work_of_half_space(faces: Array, i: int, omega: float, k: float, medium: Medium) -> Work:
+    """Return the same of the half-space below face i, where dilatation and rotation decay as exp(-r k z)."""
+    vp, vs, rho = medium
+    mu = rho * vs * vs
+    stiff = rho * vp * vp
+    u, w, t, s = faces[i, 0], faces[i, 1], faces[i, 2], faces[i, 3]
+    dilatation = (s + 2.0 * mu * k * u) / stiff
+    rotation = t / mu + 2.0 * k * w
+    decay_p = math.sqrt(k * k - (omega / vp) ** 2)
+    decay_s = math.sqrt(k * k - (omega / vs) ** 2)
+    return (
+        2.0 * rho * vs * (rotation * rotation / (2.0 * decay_s) + 4.0 * k * u * w),
+        2.0 * rho * vp * dilatation * dilatation / (2.0 * decay_p),
+        -(t * u + s * w) / rho,
+        0.0,
+    )
+
+
 @kernel
 def velocity_derivatives(
     omega: float, velocity: float, thickness: Array, vp: Array, vs: Array, density: Array
@@ -83,81 +152,34 @@ def velocity_derivatives(
     NaN where the group velocity vanishes.
     """
     n = thickness.size
-    last = n - 1
     k = omega / velocity
     layer, faces = rayleigh_shape(omega, velocity, thickness, vp, vs, density)
     total = layer.size
-    work = np.zeros((4, n))  # phi K_m phi
     pieces = np.zeros(n)
     for i in range(total):
         pieces[layer[i]] += 1.0
+    work = np.zeros((4, n))
     for i in range(total):
         j = layer[i]
-        h = thickness[j] / pieces[j]
-        rho = density[j]
-        mu = rho * vs[j] * vs[j]
-        stiff = rho * vp[j] * vp[j]
-        inertia = rho * omega * omega
-        u0, w0, t0, s0 = faces[i]
-        u1, w1, t1, s1 = faces[i + 1]
-        dilatation0 = (s0 + 2.0 * mu * k * u0) / stiff
-        dilatation1 = (s1 + 2.0 * mu * k * u1) / stiff
-        rotation0 = t0 / mu + 2.0 * k * w0
-        rotation1 = t1 / mu + 2.0 * k * w1
-        dilatations = integral_of_square(
-            dilatation0,
-            (k * mu * rotation0 - inertia * w0) / stiff,
-            dilatation1,
-            (k * mu * rotation1 - inertia * w1) / stiff,
-            k * k - (omega / vp[j]) ** 2,
-            h,
-        )
-        rotations = integral_of_square(
-            rotation0,
-            (k * stiff * dilatation0 - inertia * u0) / mu,
-            rotation1,
-            (k * stiff * dilatation1 - inertia * u1) / mu,
-            k * k - (omega / vs[j]) ** 2,
-            h,
-        )
-        work[VP, j] += 2.0 * rho * vp[j] * dilatations
-        work[VS, j] += 2.0 * rho * vs[j] * (rotations - 4.0 * k * (u1 * w1 - u0 * w0))
-        work[DENSITY, j] += (t1 * u1 + s1 * w1 - t0 * u0 - s0 * w0) / rho
-        # the Hamiltonian at the face where the mode is smaller: there it is small, not a difference
-        if u0 * u0 + w0 * w0 < u1 * u1 + w1 * w1:
-            u, w, t, dilatation = u0, w0, t0, dilatation0
-        else:
-            u, w, t, dilatation = u1, w1, t1, dilatation1
-        slope_u = t / mu + k * w
-        slope_w = dilatation - k * u
-        hamiltonian = (
-            stiff * slope_w * slope_w
-            + mu * slope_u * slope_u
-            - (stiff * k * k - inertia) * u * u
-            - (mu * k * k - inertia) * w * w
-        )
-        work[THICKNESS, j] -= hamiltonian / pieces[j]
-    rho = density[last]
-    mu = rho * vs[last] * vs[last]
-    stiff = rho * vp[last] * vp[last]
-    u, w, t, s = faces[total]
-    dilatation = (s + 2.0 * mu * k * u) / stiff
-    rotation = t / mu + 2.0 * k * w
-    r = math.sqrt(1.0 - (velocity / vp[last]) ** 2)
-    s_decay = math.sqrt(1.0 - (velocity / vs[last]) ** 2)
-    work[VP, last] = rho * vp[last] * dilatation * dilatation / (k * r)
-    work[VS, last] = 2.0 * rho * vs[last] * (rotation * rotation / (2.0 * k * s_decay) + 4.0 * k * u * w)
-    work[DENSITY, last] = -(t * u + s * w) / rho
+        piece = work_of_piece(faces, i, thickness[j] / pieces[j], omega, k, (vp[j], vs[j], density[j]))
+        work[VS, j] += piece[VS]
+        work[VP, j] += piece[VP]
+        work[DENSITY, j] += piece[DENSITY]
+        work[THICKNESS, j] += piece[THICKNESS] / pieces[j]
+    piece = work_of_half_space(faces, total, omega, k, (vp[n - 1], vs[n - 1], density[n - 1]))
+    work[VS, n - 1], work[VP, n - 1], work[DENSITY, n - 1] = piece[VS], piece[VP], piece[DENSITY]
     kinetic = 0.0
     slope = 0.0  # k phi K_k phi
     for j in range(n):
         kinetic += vp[j] * work[VP, j] + vs[j] * work[VS, j]
-        if j < last:
+        if j < n - 1:
             slope += thickness[j] * work[THICKNESS, j]
     slope += kinetic
-    if not abs(slope) > 1e-12 * kinetic:
-        return np.full((4, n), math.nan)
-    return work * (velocity / slope)
+    factor = velocity / slope if abs(slope) > STATIONARY * kinetic else math.nan
+    for row in range(4):
+        for j in range(n):
+            work[row, j] *= factor
+    return work
 
 
 @kernel
@@ -165,8 +187,16 @@ def curve_derivatives(
     omega: Array, velocity: Array, thickness: Array, vp: Array, vs: Array, density: Array
 ) -> Array:
     """Return `velocity_derivatives` at each frequency, (4, n, layers); NaN rows where the velocity is NaN."""
-    derivatives = np.full((4, omega.size, thickness.size), math.nan)
+    n = thickness.size
+    derivatives = np.empty((4, omega.size, n))
     for i in range(omega.size):
         if velocity[i] == velocity[i]:
-            derivatives[:, i, :] = velocity_derivatives(omega[i], velocity[i], thickness, vp, vs, density)
+            rows = velocity_derivatives(omega[i], velocity[i], thickness, vp, vs, density)
+            for row in range(4):
+                for j in range(n):
+                    derivatives[row, i, j] = rows[row, j]
+        else:
+            for row in range(4):
+                for j in range(n):
+                    derivatives[row, i, j] = math.nan
     return derivatives

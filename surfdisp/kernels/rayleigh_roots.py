@@ -39,9 +39,13 @@ def velocity_floor(vp: Array, vs: Array, density: Array) -> float:
     moduli and the greatest density anywhere; that wave is faster than 0.87 vs where lambda >= 0 and faster
     than 0.68 vs always.
     """
-    shear = np.min(density * vs * vs)
-    bulk = np.min(density * (vp * vp - vs * vs))  # lambda + mu, the bulk modulus of plane strain
-    return (0.87 if bulk >= 2.0 * shear else 0.68) * math.sqrt(shear / np.max(density))
+    shear = bulk = math.inf
+    greatest = 0.0
+    for i in range(vs.size):
+        shear = min(shear, density[i] * vs[i] * vs[i])
+        bulk = min(bulk, density[i] * (vp[i] * vp[i] - vs[i] * vs[i]))  # lambda + mu: that of plane strain
+        greatest = max(greatest, density[i])
+    return (0.87 if bulk >= 2.0 * shear else 0.68) * math.sqrt(shear / greatest)
 
 
 @inlined
