@@ -73,3 +73,13 @@ def test_a_step_across_a_narrow_gap_cuts():
 
 def test_nothing_gives_no_run():
     assert smooth_runs(*3 * [np.array([])], LOBE) == []
+
+
+def test_a_step_of_the_wavenumber_beyond_the_resolution_cuts_where_slopes_are_plausible():
+    # as in a field record: 400 m/s, a narrow gap, and two thirds of it beyond
+    f = np.arange(8.0, 30.0, 0.125)
+    f = f[(f < 12.0) | (f > 13.0)]
+    low = f < 12.5
+    velocity = np.where(low, 400.0 * (f / 12.0) ** -0.4, 260.0 * (f / 13.0) ** -0.3)
+    runs = smooth_runs(f, velocity, np.full(len(f), 0.8), LOBE / 2.0)
+    assert [len(run) for run in runs] == [low.sum(), (~low).sum()]

@@ -6,7 +6,13 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from surfdisp.core import Gather, InputError
-from surfdisp.dispersion import TRANSFORMS, default_frequencies, default_velocities, dispersion_image
+from surfdisp.dispersion import (
+    TRANSFORMS,
+    common_axes,
+    default_frequencies,
+    default_velocities,
+    dispersion_image,
+)
 
 LINE = np.arange(24) * 2.0
 METHODS = pytest.mark.parametrize("method", sorted(TRANSFORMS))
@@ -138,6 +144,16 @@ def test_default_axes_fit_record_and_spread(spacing, interval, count):
     assert c[0] >= 50.0
     assert c[-1] <= 2000.0
     np.testing.assert_allclose(c[1:] / c[:-1], c[1] / c[0])
+
+
+def test_common_axes_suit_the_coarsest_sampling_and_the_longest_record():
+    def of(interval, count):
+        return Gather(data=np.ones((24, count)), interval=interval, receivers=LINE, source=-2.0)
+
+    f, c = common_axes([of(0.0005, 4000), of(0.008, 100)])
+    assert f[-1] <= 0.4 / 0.008 + 1e-9
+    assert np.diff(f)[0] == pytest.approx(0.25, rel=0.05)
+    assert c[0] <= default_velocities(of(0.0005, 4000))[0]
 
 
 @pytest.mark.parametrize(
