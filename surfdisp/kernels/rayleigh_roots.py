@@ -28,6 +28,7 @@ Array = NDArray[np.float64]
 MARGIN = 1e-10  # relative distance at which a root is certified by counts on either side
 PHASE_STEP = 0.8  # largest change of vertical phase from one velocity of a scan to the next [rad]
 VELOCITY_STEP = 0.1  # largest relative change of velocity in a scan
+LEAST_STEP = 1e-9  # the same at least, so that a scan ends
 NEARBY = 1e-7  # relative step of difference quotients
 
 
@@ -45,7 +46,7 @@ def velocity_floor(vp: Array, vs: Array, density: Array) -> float:
         shear = min(shear, density[i] * vs[i] * vs[i])
         bulk = min(bulk, density[i] * (vp[i] * vp[i] - vs[i] * vs[i]))  # lambda + mu: that of plane strain
         greatest = max(greatest, density[i])
-    return (0.87 if bulk >= 2.0 * shear else 0.68) * math.sqrt(shear / greatest)
+    return (0.87 if bulk >= shear else 0.68) * math.sqrt(shear / greatest)
 
 
 @inlined
@@ -71,7 +72,7 @@ def next_velocity(omega: float, velocity: float, top: float, table: Array) -> fl
     for _ in range(40):
         ahead = min(velocity * (1.0 + step), top)
         change = vertical_phase(omega, ahead, table) - here
-        if change <= PHASE_STEP:
+        if change <= PHASE_STEP or step < LEAST_STEP:
             break
         step *= max(0.25, min(0.8, PHASE_STEP / change))
     return ahead
