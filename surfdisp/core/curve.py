@@ -45,11 +45,11 @@ class DispersionCurve:
     notes: tuple[str, ...] = ()
 
     def __post_init__(self) -> None:
-        count = len(self.frequency)
         for field in ("frequency", "velocity", "sigma"):
             set_field(self, field, float_array(getattr(self, field), field))
             all_finite(getattr(self, field), field)
             all_positive(getattr(self, field), field)
+        count = len(self.frequency)
         shots = np.ones(count) if self.shots is None else self.shots
         flags = np.full(count, "") if self.flags is None else self.flags
         set_field(self, "shots", frozen(shots, "shots", dtype=np.int64))

@@ -26,15 +26,20 @@ class Ensemble:
     weights: FloatArray = tagged("", "earth")
 
     def __post_init__(self) -> None:
-        for field in ("thickness", "vp", "vs", "density"):
+        for field in ("vs", "thickness", "vp", "density"):
             set_field(self, field, float_array(getattr(self, field), field, ndim=2))
+            if getattr(self, field).shape != self.vs.shape:
+                raise InputError(
+                    f"{field} must have the shape of vs {self.vs.shape}; got {getattr(self, field).shape}"
+                )
         weights = np.asarray(self.weights, dtype=float)
-        if weights.shape != (self.vs.shape[0],) or weights.size == 0 or not np.all(weights >= 0.0):
-            raise InputError(
-                f"weights must be one non-negative number per earth; got shape {weights.shape} "
-                f"for {self.vs.shape[0]} earths"
-            )
         total = float(weights.sum())
+        proper = np.all(weights >= 0.0) and 0.0 < total < np.inf
+        if weights.shape != (self.vs.shape[0],) or not proper:
+            raise InputError(
+                "weights must be one finite non-negative number per earth, not all zero; got shape "
+                f"{weights.shape} with sum {total} for {self.vs.shape[0]} earths"
+            )
         if abs(total - 1.0) > 1e-12:  # dividing again what already sums to 1 would move the last bits
             weights = weights / total
         set_field(self, "weights", float_array(weights, "weights"))

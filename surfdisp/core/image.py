@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from .checks import FloatArray, all_finite, all_positive, float_array, increasing
+from .checks import FloatArray, all_finite, all_positive, float_array, increasing, same_length
 from .errors import InputError
 from .noun import noun, set_field, tagged
 
@@ -57,10 +57,14 @@ class DispersionImage:
         all_finite(self.power, "power")
         if self.power.size and (self.power.min() < 0.0 or self.power.max() > 1.0 + 1e-9):
             raise InputError(f"power must lie in 0..1; got {self.power.min()} to {self.power.max()}")
-        noise = (
-            np.full(len(self.frequencies), np.nan) if self.signal_to_noise is None else self.signal_to_noise
-        )
+        count = len(self.frequencies)
+        noise = np.full(count, np.nan) if self.signal_to_noise is None else self.signal_to_noise
         set_field(self, "signal_to_noise", float_array(noise, "signal_to_noise"))
+        same_length([("frequencies", self.frequencies), ("signal_to_noise", self.signal_to_noise)])  # type: ignore[list-item]
+        if self.offsets.size == 0 or not np.all(np.diff(self.offsets) >= 0.0):
+            raise InputError(f"offsets must hold a distance and must not decrease; got {self.offsets}")
+        if self.spacing <= 0.0:
+            raise InputError(f"spacing must be positive, or NaN where unknown; got {self.spacing}")
 
     @property
     def aperture(self) -> float:

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from .checks import FloatArray, float_array, frozen, increasing, one_of, same_length
+from .checks import FloatArray, all_finite, float_array, frozen, increasing, one_of, same_length
 from .noun import noun, set_field, tagged
 
 WAVES = ("rayleigh", "love")
@@ -58,6 +58,10 @@ class Picks:
         fields = ("frequency", "velocity", "sigma", "half_width", "accepted", "reason")
         same_length([(field, getattr(self, field)) for field in fields])
         increasing(self.frequency, "frequency")
+        for field in ("velocity", "sigma"):
+            all_finite(
+                getattr(self, field)[self.accepted], f"{field} of accepted picks of {self.name or 'an image'}"
+            )
         one_of(self.wave, "wave", WAVES)
         one_of(self.kind, "kind", KINDS)
 

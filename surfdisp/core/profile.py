@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from .checks import FloatArray, float_array, increasing, same_length
+from .errors import InputError
 from .noun import noun, set_field, tagged
 
 
@@ -29,3 +30,5 @@ class Profile:
             set_field(self, field, float_array(getattr(self, field), field))
         same_length([(field, getattr(self, field)) for field in fields])
         increasing(self.depth, "depth")
+        if self.depth.size and self.depth[0] != 0.0:
+            raise InputError(f"depth must start at 0; got {self.depth[0]}")

@@ -31,7 +31,6 @@ class FieldFile:
     """
 
     name: str
-    sha256: str
     format: str
     stream: Any
     said: tuple[str, ...]
@@ -93,7 +92,7 @@ def parse(content: bytes, name: str) -> FieldFile:
             content = hide_date(content)
         stream = _read(content, kind, name)
         _check_size(stream, len(content), kind, name)
-    return FieldFile(name, digest(content), kind, stream, _worth_telling(caught))
+    return FieldFile(name, kind, stream, _worth_telling(caught))
 
 
 def _recognise(content: bytes, name: str) -> str:

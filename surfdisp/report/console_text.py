@@ -7,6 +7,7 @@ from collections.abc import Iterator, Sequence
 
 from ..core import DispersionCurve, Profile, Record, SiteResult, SurveyResult
 from ..site.assess import VELOCITY_ONLY
+from ..site.wavelength_check import agrees
 from .tables import sorted_notes
 from .words import (
     interval,
@@ -98,8 +99,7 @@ def _site(site: SiteResult) -> Iterator[str]:
 def _check(site: SiteResult) -> Iterator[str]:
     check = site.wavelength_check
     if check is not None:
-        apart = check.low > site.vs30.high or check.high < site.vs30.low
-        verdict = "does NOT agree" if apart else "agrees"
+        verdict = "agrees" if agrees(site.vs30, check) else "does NOT agree"
         yield (
             f"  check from the phase velocity at 36 m wavelength (Brown, Diehl & Nigbor 2000): "
             f"{interval(check)}, {verdict}"

@@ -142,7 +142,10 @@ def site_quantities(site: SiteResult) -> Iterator[Block]:
 
 def _check(site: SiteResult) -> str:
     if site.wavelength_check is None:
-        return "Vs30 cannot be checked by the phase velocity at 36 m wavelength: the curve does not reach it."
+        return (
+            "Vs30 cannot be checked by the phase velocity at 36 m wavelength: the curve is no fundamental "
+            "Rayleigh curve that reaches it."
+        )
     return (
         "Check from the curve alone, 1.076 times the phase velocity at 36 m wavelength (Brown, Diehl & "
         f"Nigbor 2000): {interval(site.wavelength_check)}."

@@ -8,7 +8,7 @@ import shutil
 import tempfile
 from pathlib import Path
 
-from ..core import InputError, SurveyResult
+from ..core import InputError, StoreError, SurveyResult
 from ..project import write_project
 from .figures import write_figures
 from .pdf import write_report
@@ -28,6 +28,8 @@ def write_outputs(folder: str | os.PathLike[str], result: SurveyResult) -> None:
     ------
     InputError
         If `folder` is a file or cannot be made.
+    StoreError
+        If the disk is full or the folder cannot be written.
     """
     folder = Path(folder)
     if folder.exists() and not folder.is_dir():
@@ -43,6 +45,8 @@ def write_outputs(folder: str | os.PathLike[str], result: SurveyResult) -> None:
         write_figures(workplace, result)
         write_report(workplace / REPORT, result, figures=workplace)
         _move_into_place(workplace, folder)
+    except OSError as error:
+        raise StoreError(f"{folder}: the results cannot be written: {error.strerror or error}") from error
     finally:
         shutil.rmtree(workplace, ignore_errors=True)
 

@@ -9,7 +9,7 @@ from .averages import average_velocities, travel_times
 from .classes import STANDARDS, UNITS, standard
 from .percentiles import weighted_percentiles
 from .rock_cover import cover_thickness
-from .wavelength_check import RANGE_95, WAVELENGTH
+from .wavelength_check import RANGE_95, WAVELENGTH, agrees
 
 CAUTION = (
     "The result depends on the site engineer's judgement; local codes and licensed practice prevail over "
@@ -86,9 +86,8 @@ def _agreement(vs30: Interval, check: Interval | None) -> str:
     if check is None:
         return f"{source}: not available, the curve is no fundamental Rayleigh curve that reaches it."
     difference = 100.0 * (vs30.median / check.median - 1.0)
-    inside = check.low <= vs30.median <= check.high
     return (
         f"{source}: {check.median:.0f} m/s, 90 % range {check.low:.0f} to {check.high:.0f} m/s (regression, "
         f"+-{100.0 * RANGE_95:.0f} % at 95 %); the inverted Vs30 differs by {difference:+.0f} % and lies "
-        f"{'inside' if inside else 'OUTSIDE'} it."
+        f"{'inside' if agrees(vs30, check) else 'OUTSIDE'} it."
     )

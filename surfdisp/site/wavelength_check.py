@@ -37,3 +37,8 @@ def wavelength_check(curve: DispersionCurve) -> Interval | None:
     half = 1.645 * math.hypot(RANGE_95 / 1.960, sigma)
     vs30 = FACTOR * velocity
     return Interval(median=vs30, low=vs30 * (1.0 - half), high=vs30 * (1.0 + half))
+
+
+def agrees(vs30: Interval, check: Interval) -> bool:
+    """Tell whether the median Vs30 lies inside the range of the check."""
+    return check.low <= vs30.median <= check.high

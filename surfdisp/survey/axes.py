@@ -36,6 +36,11 @@ def _ends(axis: FloatArray, limits: tuple[float | None, float | None], name: str
     last = float(axis[-1]) if limits[1] is None else limits[1]
     if not first < last:
         raise InputError(
-            f"image.minimum_{name} must be below image.maximum_{name}; got {first:g} and {last:g}"
+            f"image.minimum_{name} must be below image.maximum_{name}; got {_said(limits[0], first)} and "
+            f"{_said(limits[1], last)}"
         )
     return first, last, len(axis)
+
+
+def _said(given: float | None, used: float) -> str:
+    return f"{used:g}" if given is not None else f"{used:g} (the default)"

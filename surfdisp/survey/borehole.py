@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import csv
+import math
 from pathlib import Path
 
 from ..core import InputError, Profile
@@ -24,7 +25,7 @@ def read_borehole_log(path: Path) -> Profile:
     except (OSError, UnicodeDecodeError, csv.Error) as error:
         raise InputError(f"{path}: cannot be read as CSV ({error})") from error
     if not rows or any(column not in rows[0] for column in COLUMNS):
-        found = ", ".join(rows[0]) if rows else "no rows"
+        found = ", ".join(str(column) for column in rows[0]) if rows else "no rows"
         raise InputError(f"{path}: expected columns {', '.join(COLUMNS)}; found {found}")
     values = [[_number(path, line, row, column) for column in COLUMNS] for line, row in enumerate(rows, 2)]
     depth, vs = zip(*values, strict=True)
@@ -36,6 +37,9 @@ def read_borehole_log(path: Path) -> Profile:
 
 def _number(path: Path, line: int, row: dict[str, str], column: str) -> float:
     try:
-        return float(row[column])
-    except (TypeError, ValueError) as error:
-        raise InputError(f"{path}, line {line}: {column} must be a number; got {row[column]!r}") from error
+        value = float(row[column])
+    except (TypeError, ValueError):
+        value = math.nan
+    if not math.isfinite(value) or value < 0.0 or (column == "vs_m_s" and value == 0.0):
+        raise InputError(f"{path}, line {line}: {column} must be a positive number; got {row[column]!r}")
+    return value

@@ -18,6 +18,7 @@ from ..core import (
     Progress,
     Record,
     SiteResult,
+    StepError,
     SurveyResult,
 )
 from ..dispersion import CurveFromGathers, curve_from_gathers
@@ -46,15 +47,14 @@ def run_survey(settings: Settings, *, progress: Progress = SILENT) -> SurveyResu
     """
     logs = tuple(read_borehole_log(Path(log)) for log in settings.site.borehole_logs)
     seen = look_at(settings, progress=progress)
+    seen = replace(seen, logs=logs)
     if seen.curve is None:
         return replace(seen, warnings=(*seen.warnings, NOTHING_PICKED))
-    inversion = invert_curve(seen.curve, settings.inversion, progress=progress)
-    return replace(
-        seen,
-        inversion=inversion,
-        site=state_site(inversion, settings.site),
-        logs=logs,
-    )
+    try:
+        inversion = invert_curve(seen.curve, settings.inversion, progress=progress)
+    except StepError as error:
+        return replace(seen, warnings=(*seen.warnings, f"No profile, no Vs30 and no site class: {error}."))
+    return replace(seen, inversion=inversion, site=state_site(inversion, settings.site))
 
 
 def look_at(settings: Settings, *, progress: Progress = SILENT) -> SurveyResult:
@@ -132,13 +132,13 @@ def invert_curve(
         "saturated_vp": settings.saturated_vp_m_s,
         "density": settings.density_kg_m3,
         "vs_bounds": bounds,
+        "n_earths": settings.earths,
     }
     given = {name: value for name, value in chosen.items() if value is not None}
     return invert(
         curve,
         **given,
         allow_decrease=settings.allow_decrease,
-        n_earths=settings.earths,
         seed=settings.seed,
         progress=progress,
     )

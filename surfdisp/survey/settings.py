@@ -102,7 +102,7 @@ class ImageSettings(Section):
 class InversionSettings(Section):
     """Layering, the earth's other properties, and the draws around the best earths."""
 
-    layering_ratios: tuple[Annotated[float, Field(gt=1.0, le=10.0)], ...] | None = None
+    layering_ratios: tuple[Annotated[float, Field(ge=1.0, le=10.0)], ...] | None = None
     layer_thicknesses_m: tuple[tuple[Positive, ...], ...] | None = None
     poisson_ratio: Annotated[float, Field(ge=0.0, lt=0.5)] | None = None
     water_table_depth_m: NonNegative | None = None
@@ -112,7 +112,7 @@ class InversionSettings(Section):
     minimum_vs_m_s: Positive | None = None
     maximum_vs_m_s: Positive | None = None
     allow_decrease: bool = True
-    earths: Annotated[int, Field(ge=100, le=100_000)] = 600
+    earths: Annotated[int, Field(ge=100, le=100_000)] | None = None
     seed: Annotated[int, Field(ge=0)] = 0
 
     @model_validator(mode="after")

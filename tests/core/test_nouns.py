@@ -30,6 +30,22 @@ def earth(layers=3, vs=200.0):
     )
 
 
+def image(**changes):
+    values = {
+        "frequencies": [5.0, 6.0],
+        "velocities": [100.0, 200.0],
+        "power": np.zeros((2, 2)),
+        "offsets": [2.0, 3.0],
+        "spacing": 1.0,
+    }
+    return DispersionImage(**{**values, **changes})
+
+
+def accepted_pick(velocity):
+    values = {"frequency": [1.0], "velocity": [velocity], "sigma": [1.0], "half_width": [1.0]}
+    return Picks(**values, accepted=[True], reason=[""], name="shot 7")
+
+
 def test_equality_is_by_content_and_nan_equals_nan():
     values = {"frequency": [1.0], "velocity": [np.nan], "sigma": [np.nan], "half_width": [np.nan]}
     first = Picks(**values, accepted=[False], reason=["no ridge"])
@@ -106,6 +122,15 @@ def test_an_impossible_earth_is_refused_with_the_demand_by_name(changes, demand)
         (lambda: DispersionCurve(frequency=[1.0], velocity=[1.0], sigma=[1.0], wave="stoneley"), "wave must"),
         (lambda: Profile(depth=[0.0, 0.0], median=[1, 1], low=[1, 1], high=[1, 1]), "depth must increase"),
         (lambda: Ensemble.of([earth()], [-1.0]), "weights must be"),
+        (lambda: Ensemble.of([earth(), earth()], [0.0, 0.0]), "weights must be"),
+        (lambda: Ensemble.of([earth(), earth()], [1.0, np.inf]), "weights must be"),
+        (lambda: image(signal_to_noise=[1.0, 2.0, 3.0]), "signal_to_noise must have as many"),
+        (lambda: image(offsets=[]), "offsets must hold"),
+        (lambda: image(offsets=[3.0, 2.0]), "offsets must hold"),
+        (lambda: image(spacing=0.0), "spacing must be positive"),
+        (lambda: accepted_pick(np.nan), "velocity of accepted picks of shot 7"),
+        (lambda: DispersionCurve(frequency=3.0, velocity=[1.0], sigma=[1.0]), "frequency must have 1 axis"),
+        (lambda: Profile(depth=[1.0], median=[1], low=[1], high=[1]), "depth must start at 0"),
         (
             lambda: DispersionImage(
                 frequencies=[1.0], velocities=[1.0], power=[[1.5]], offsets=[1.0], spacing=1.0

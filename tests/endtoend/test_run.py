@@ -105,7 +105,7 @@ class TestFieldRecords:
         assert found["vs30"]["low"] < found["vs30"]["median"] < found["vs30"]["high"]
         assert min(point["frequency"] for point in found["curve"]) >= 9.0
         assert any("halves" in warning for warning in found["warnings"])
-        assert "Vs30" in capsys.readouterr().out
+        assert f"Vs30: {found['vs30']['median']:.0f} m/s" in capsys.readouterr().out
 
     def test_no_ridge_ends_without_a_profile_and_says_why(self, field_data, tmp_path):
         run("run", *sorted((field_data / "no_ridge").glob("*.dat")), "--out", tmp_path)

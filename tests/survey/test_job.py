@@ -95,3 +95,19 @@ def test_a_survey_without_a_usable_record_is_refused_with_file_and_reason(tmp_pa
     bad.write_text("a field note")
     with pytest.raises(InputError, match=r"^notes\.sg2: "):
         run_survey(settings_for_files([bad]))
+
+
+def test_a_curve_too_short_to_invert_keeps_records_images_and_curve_and_says_so(tmp_path, monkeypatch):
+    curve = DispersionCurve(frequency=[10.0, 12.0], velocity=[200.0, 190.0], sigma=[4.0, 4.0])
+    real = job.see
+
+    def short(*args, **options):
+        return real(*args, **options)._replace(curve=curve)
+
+    monkeypatch.setattr(job, "see", short)
+    result = run_survey(survey(tmp_path))
+    assert result.curve == curve
+    assert len(result.images) == 1
+    assert result.inversion is None
+    assert result.site is None
+    assert any("No profile" in warning and "at least 4 points" in warning for warning in result.warnings)

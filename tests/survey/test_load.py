@@ -75,5 +75,13 @@ def test_borehole_log_steps_are_read_and_bad_numbers_named_with_their_line(tmp_p
     assert profile.depth.tolist() == [0.0, 4.5]
     assert profile.median.tolist() == [150.0, 240.0]
     log.write_text("depth_m,vs_m_s\n0,150\n4.5,hard\n")
-    with pytest.raises(InputError, match="line 3: vs_m_s must be a number; got 'hard'"):
+    with pytest.raises(InputError, match="line 3: vs_m_s must be a positive number; got 'hard'"):
+        read_borehole_log(log)
+
+
+@pytest.mark.parametrize("rows", ["0,nan", "0,-200", "3,200", "0,200\n0,210", "0,200\ninf,300", "0,200,9"])
+def test_an_impossible_borehole_log_is_refused_by_name(tmp_path, rows):
+    log = tmp_path / "log.csv"
+    log.write_text(f"depth_m,vs_m_s\n{rows}\n" if rows != "0,200,9" else "depth,speed\n0,200,9\n")
+    with pytest.raises(InputError, match=r"log\.csv"):
         read_borehole_log(log)
