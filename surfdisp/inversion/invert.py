@@ -260,7 +260,7 @@ def _ensemble(
 def _message(best: Fit) -> str:
     fitted = (
         f"fits to the noise, chi-square {best.chi_square:.2f}"
-        if best.chi_square <= TARGET
+        if best.fits_the_noise
         else f"does not fit to the noise: chi-square {best.chi_square:.2f}"
     )
     return f"{best.message}; {fitted}"

@@ -142,7 +142,7 @@ def _fit(result: InversionResult, best: Fit, assumed: Assumptions) -> list[str]:
         else "Vs is held back from falling with depth in the fits, not in the ranges.",
         f"The best earth does not fit to the noise (chi-square {best.chi_square:.2f}): sigma is too small, "
         "or the ground is not layered flat, or the ridge is not the mode assumed; the ranges are widened."
-        if best.chi_square > TARGET
+        if not best.fits_the_noise
         else "",
         f"Even the smoothest earths fit better than the noise (chi-square {best.chi_square:.2f}): sigma is "
         "probably larger than the curve's point-to-point error."

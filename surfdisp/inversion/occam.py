@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -11,16 +12,24 @@ from .bounded_least_squares import Minimum, minimise
 from .misfit import Misfit
 from .smoothness import Smoothness
 
-WANDERS = tuple(0.1 * 2.0 ** (index / 2.0) for index in range(9))
-"""Standard deviations of ln Vs per e-fold of depth that are tried, smoothest first: 0.1 to 1.6."""
+WANDERS = tuple(0.1 * 2.0 ** (index / 2.0) for index in range(6))
+"""Standard deviations of ln Vs per e-fold of depth that are tried, smoothest first: 0.1 to 0.57."""
 TARGET = 1.0
 """Chi-square that counts as a fit to the noise."""
 TOLERANCE = 1e-3
 """Of the cost: less than the noise can tell apart."""
 MOST_ITERATIONS = 30
 """In one search; each starts from the result of the next smoother one."""
-ENOUGH = 1.05
+ENOUGH = 1.1
 """Where none reaches the target: the smoothest within this factor of the least chi-square."""
+
+
+def fits_the_noise(chi_square: float, count: int) -> bool:
+    """Tell whether the mean squared residual of `count` points lies within two standard deviations of 1.
+
+    The mean of n squared standard normal numbers scatters by sqrt(2 / n).
+    """
+    return chi_square <= TARGET + 2.0 * math.sqrt(2.0 / count)
 
 
 @dataclass(frozen=True)
@@ -49,6 +58,11 @@ class Fit:
     costs: tuple[tuple[float, ...], ...]
     converged: bool
     message: str
+
+    @property
+    def fits_the_noise(self) -> bool:
+        """Whether chi-square is what the stated noise would leave."""
+        return fits_the_noise(self.chi_square, len(self.misfit.curve.frequency))
 
     @property
     def iterations(self) -> int:

@@ -11,7 +11,7 @@ from surfdisp.earth import phase_velocity
 from surfdisp.inversion import Layering, layering_by_ratio
 from surfdisp.inversion.ground import Ground
 from surfdisp.inversion.misfit import Misfit
-from surfdisp.inversion.occam import ENOUGH, TARGET, WANDERS, smoothest_fit
+from surfdisp.inversion.occam import ENOUGH, TARGET, WANDERS, fits_the_noise, smoothest_fit
 from surfdisp.inversion.smoothness import Smoothness
 from surfdisp.inversion.starting import VELOCITY_FACTOR, WAVELENGTHS_PER_DEPTH, starting_ln_vs
 
@@ -102,6 +102,13 @@ def test_misfit_never_rises_and_bounds_hold_in_200_random_problems():
         fitted += fit.chi_square <= TARGET
     assert all(seen)
     assert fitted > 100  # the layering is coarse and fixed: many, not all, can be fitted
+
+
+def test_chi_square_scatters_by_the_root_of_two_over_n():
+    random = np.random.default_rng(3)
+    share = np.mean([fits_the_noise(np.mean(random.standard_normal(40) ** 2), 40) for _ in range(4000)])
+    assert 0.95 < share < 0.98  # one-sided two standard deviations of a slightly skewed distribution
+    assert not fits_the_noise(1.5, 40)
 
 
 def test_start_is_one_point_one_times_the_velocity_at_its_wavelength_over_two_and_a_half():

@@ -85,11 +85,11 @@ def test_en_1998_rules_about_soil_over_rock(thickness, vs, name):
 
 
 def test_short_resolved_depth_makes_vs30_tell_how_much_is_extension():
-    # 10 of 30 m resolved at 200 m/s over 400 m/s: 0.05 of 0.10 s lie below
-    site = site_result(inversion([earth([10.0], [200.0, 400.0])], resolved_depth=10.0))
-    assert site.vs30.median == pytest.approx(300.0)
+    # 10 of 30 m resolved at 200 m/s over 800 m/s: 0.025 of 0.075 s lie below
+    site = site_result(inversion([earth([10.0], [200.0, 800.0])], resolved_depth=10.0))
+    assert site.vs30.median == pytest.approx(400.0)
     assert "resolves 10.0 m" in site.vs30_note
-    assert "50 % of the travel time" in site.vs30_note
+    assert "33 % of the travel time" in site.vs30_note
     assert site_result(inversion(uniform(200.0), resolved_depth=30.0)).vs30_note == ""
 
 
