@@ -8,7 +8,15 @@ import pytest
 from surfdisp.core import DispersionCurve
 from surfdisp.earth import phase_velocity
 from surfdisp.inversion import Layering
-from surfdisp.inversion.ensemble import LARGEST_RATIO, LEAST_RATIO, Spread, independent_points, likelihoods
+from surfdisp.inversion.ensemble import (
+    DENSITY_TREND_ERROR,
+    LARGEST_RATIO,
+    LEAST_RATIO,
+    POISSON_ERROR,
+    Spread,
+    independent_points,
+    likelihoods,
+)
 from surfdisp.inversion.ground import Ground
 from surfdisp.inversion.misfit import Misfit
 from surfdisp.inversion.occam import Fit
@@ -58,7 +66,7 @@ def test_resolution_runs_from_nought_to_one_with_the_noise():
 
 def test_draws_have_the_covariance_of_the_precision_where_the_problem_is_linear():
     spread = Spread.around(fit(noise=0.002))  # small steps: the curve is linear in them
-    earths, weights = drawn(spread, 4000)
+    earths, weights = drawn(spread, 1500)
     ln_vs = np.log([earth.vs for earth in earths])
     expected = np.sqrt(np.diag(np.linalg.inv(spread.precision))[:3])
     mean = weights @ ln_vs
@@ -118,3 +126,50 @@ def test_fits_to_the_noise_count_alike_and_worse_ones_less():
     curve = found.misfit.curve
     relative = likelihoods([replace(found, chi_square=value) for value in (0.4, 1.0, 1.5)], curve)
     np.testing.assert_allclose(relative, [1.0, 1.0, np.exp(-0.5 * independent_points(curve) * 0.5)])
+
+
+def test_draws_spread_poissons_ratio_and_density_trend_as_assumed():
+    # data so vague that both keep their priors
+    spread = Spread.around(fit(noise=0.5))
+    ground, layering = spread.fit.misfit.ground, spread.fit.misfit.layering
+    earths, _ = drawn(spread, 600)
+    ratios = np.array([earth.vp[0] / earth.vs[0] for earth in earths]) ** 2
+    poisson = (ratios - 2.0) / (2.0 * (ratios - 1.0))
+    assert np.std(poisson) == pytest.approx(POISSON_ERROR, rel=0.15)
+    assert np.mean(poisson) == pytest.approx(1.0 / 3.0, abs=0.02)
+    depth_ratio = np.log(layering.middle[2] / layering.middle[0])
+    trends = []
+    for earth in earths:
+        untilted, _ = ground.densities(earth.vs, layering)
+        trends.append(np.log(earth.density[2] / untilted[2]) / depth_ratio)
+    assert np.std(trends) == pytest.approx(DENSITY_TREND_ERROR, rel=0.15)
+
+
+def steps_of(spread, count=40):
+    factor = np.linalg.cholesky(spread.precision)
+    normal = np.random.default_rng(5).standard_normal((len(factor), count))
+    return np.linalg.solve(factor.T, normal).T
+
+
+def test_mending_brings_the_true_residuals_closer_to_the_linearised_ones():
+    spread = Spread.around(fit(noise=0.06))
+    before, after = [], []
+    for step in steps_of(spread):
+        member, ln_vs, _ = spread._corrected(step, 0.0, 9.0)
+        linear = spread.residuals + spread.jacobian @ step
+        after.append(np.linalg.norm(member.residuals(ln_vs) - linear))
+        before.append(np.linalg.norm(member.residuals(LN_VS + step[:-2]) - linear))
+    assert np.median(after) < 0.5 * np.median(before)
+
+
+def test_weight_of_a_draw_is_its_likelihood_over_the_linearised_one():
+    spread = Spread.around(fit(noise=0.06, points=30))
+    ratios, expected = [], []
+    for step in steps_of(spread):
+        member, ln_vs, ratio = spread._corrected(step, 0.0, 9.0)
+        true, linear = member.residuals(ln_vs), spread.residuals + spread.jacobian @ step
+        effective = independent_points(member.curve) / 30.0  # of each squared residual, chi-square being 1
+        ratios.append(np.log(ratio))
+        expected.append(0.5 * effective * (np.sum(linear**2) - np.sum(true**2)))
+    np.testing.assert_allclose(ratios, expected, atol=1e-9)
+    assert np.std(expected) > 0.1
