@@ -15,7 +15,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from .jit import inlined, kernel
-from .layer_table import layer_table
+from .layer_table import STEP, layer_table
 from .rayleigh_count import rayleigh_count
 from .rayleigh_roots import MARGIN, certified, scanned, velocity_floor
 from .rayleigh_secular import rayleigh_secular
@@ -25,7 +25,7 @@ Array = NDArray[np.float64]
 TOP = 1e-9  # relative distance below the half-space shear velocity up to which modes are sought
 CLOSE = math.log(1.5)  # largest step in log frequency of a pursuit
 EXPECTED = 0.03  # relative distance from the extrapolated velocity within which a pursued root may lie
-MODERATE = 6.0  # ratio of vs to c up to which the secular function is as exact as `MARGIN`
+ROUNDING = 1e-14  # of the secular function, per square of the largest contrast eta that it has to cancel
 
 LOG_OMEGA, VELOCITY, SLOPE = range(3)  # columns of the trail: roots found, newest first; slope of the secular
 MEMORY = 4  # function there, NaN where unknown; rows of the trail
@@ -106,7 +106,7 @@ def solved_near(
             # the error of the secant step is K (x-a)(x-b), that of the quadratic one K^2 (x-a)(x-b)(x-c)
             ea, eb, ec = abs(x - a), abs(x - b), abs(x - c)
             bend = max(abs(x - secant) / (ea * eb), eb / (ea * ec))  # K, from this step and from the last
-            if bend * bend * ea * eb * ec <= 2e-11 * x:
+            if bend * bend * ea * eb * ec <= 5e-12 * x:
                 return x, slope
         c, fc = a, fa
         a, fa = b, fb
@@ -122,7 +122,7 @@ def pursued(
     mode: int,
     trail: Array,
     known: int,
-    fastest: float,
+    contrast: float,
     table: Array,
 ) -> tuple[float, float]:
     """Return the root that continues the trail, with the slope of the secular function, or NaN."""
@@ -139,7 +139,9 @@ def pursued(
     if abs(polished - root) < MARGIN * root:
         below = root * (1.0 - MARGIN)
         root = polished
-        if mode == 0 and fastest < MODERATE * root and rayleigh_count(omega, below, table) == 0:
+        eta = contrast / (root * root)
+        exact = ROUNDING * (1.0 + eta * eta) < MARGIN * root * abs(slope)
+        if mode == 0 and exact and rayleigh_count(omega, below, table) == 0:
             return root, slope  # the sign of `value` stands for an odd count above
     return certified(omega, root, low, top, mode, table), slope
 
@@ -159,9 +161,9 @@ def slowest_velocities(
     """
     table = layer_table(thickness, vp, vs, density)
     top = vs[-1] * (1.0 - TOP)
-    fastest = 0.0
+    contrast = 0.0
     for i in range(vs.size):
-        fastest = max(fastest, vs[i])
+        contrast = max(contrast, abs(table[i, STEP]))
     slowest = velocity_floor(vp, vs, density)
     cleared = math.inf  # wavenumber above which the branch is known to lie above the frequency at hand
     trail = np.empty((MEMORY, 3))
@@ -181,7 +183,7 @@ def slowest_velocities(
                     break
                 w = omega[i] * math.exp(left * step) if left > 0 else omega[i]
                 low = max(slowest, w / cleared)
-                root, slope = pursued(w, low, top, mode, trail, known, fastest, table)
+                root, slope = pursued(w, low, top, mode, trail, known, contrast, table)
                 if root != root:
                     break
                 known = remembered(trail, known, log_omega + left * step, root, slope)

@@ -25,7 +25,7 @@ from .rayleigh_secular import rayleigh_secular
 
 Array = NDArray[np.float64]
 
-MARGIN = 1e-10  # relative distance at which a root is certified by counts on either side
+MARGIN = 2e-11  # relative distance at which a root is certified by counts on either side
 PHASE_STEP = 0.8  # largest change of vertical phase from one velocity of a scan to the next [rad]
 VELOCITY_STEP = 0.1  # largest relative change of velocity in a scan
 LEAST_STEP = 1e-9  # the same at least, so that a scan ends
@@ -155,7 +155,7 @@ def certified(omega: float, root: float, low: float, high: float, mode: int, tab
     much faster than c; there the counts differ across a wider margin, and the root is bisected by count.
     """
     margin = MARGIN
-    for _ in range(6):
+    for _ in range(8):
         below = max(root * (1.0 - margin), low)
         above = min(root * (1.0 + margin), high)
         if rayleigh_count(omega, below, table) <= mode < rayleigh_count(omega, above, table):
