@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import sys
+from typing import Annotated
 
 import typer
 
+from .. import __version__
 from ..core import SurfdispError
 from . import console
 from .look import look
@@ -13,6 +15,13 @@ from .records import records
 from .run import run
 
 INTERRUPTED = 130
+
+
+def _print_version(wanted: bool) -> None:
+    if wanted:
+        console.result(__version__)
+        raise typer.Exit
+
 
 app = typer.Typer(
     help="From the field files of a surface-wave survey to a shear-velocity profile with its uncertainty.\n\n"
@@ -22,6 +31,18 @@ app = typer.Typer(
     rich_markup_mode=None,
     pretty_exceptions_enable=False,
 )
+
+
+@app.callback()
+def surfdisp(
+    version: Annotated[
+        bool,
+        typer.Option("--version", help="Print the version and exit.", callback=_print_version, is_eager=True),
+    ] = False,
+) -> None:
+    pass
+
+
 for verb in (run, look, records):
     app.command()(verb)
 

@@ -15,6 +15,8 @@ def records(
 ) -> None:
     """Print what was read from each file, and every doubt about it.
 
+    A file that cannot be used is part of the answer: the exit code is 0.
+
     Example: surfdisp records shot_*.dat
     """
     from ..report import records_text

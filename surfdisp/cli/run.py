@@ -16,7 +16,10 @@ def run(
         Path, typer.Option(help="Folder for the results; replaced file by file, on success only.")
     ],
 ) -> None:
-    """Do the whole job: records, image, picks, curve, inversion, site quantities, report.
+    """Do the whole job, from field files to the report.
+
+    Records, image, picks, curve, inversion, site quantities. Positions in a configuration, or in shots.csv
+    and receivers.csv beside the records, win over the headers.
 
     Examples: surfdisp run configs/river_terrace.toml --out result/
 
@@ -24,14 +27,15 @@ def run(
     """
     from ..core import InputError
     from ..report import summary_text, write_outputs
-    from ..survey import run_survey, settings_from
+    from ..survey import read_usable, run_survey, settings_from
 
     if out.exists() and not out.is_dir():
         raise InputError(f"--out {out}: is a file; give a folder")
     settings = settings_from(inputs)
-    console.say_first_run()
     with console.progress() as progress:
-        result = run_survey(settings, progress=progress)
+        read = read_usable(settings, progress=progress)
+        console.say_first_run()
+        result = run_survey(settings, read=read, progress=progress)
         write_outputs(out, result)
     console.result(summary_text(result))
     console.result(

@@ -4,12 +4,13 @@ from .coherence import neighbour_coherence
 from .conditioning import condition
 from .geometry import Geometry, ReceiverLine, ShotGeometry
 from .geometry_tables import geometry_beside, read_geometry_csv
-from .prepare import prepare_records
+from .prepare import STACKED, prepare_records
 from .reading import read_gather
 from .seg2_writer import write_seg2
 from .trace_faults import trace_faults
 
 __all__ = [
+    "STACKED",
     "Geometry",
     "ReceiverLine",
     "ShotGeometry",

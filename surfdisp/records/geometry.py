@@ -69,6 +69,14 @@ class ShotGeometry:
             value = getattr(self, name)
             set_field(self, name, None if value is None else finite(value, name))
 
+    def over(self, lower: ShotGeometry, moved: bool) -> ShotGeometry:
+        """Return both in one; where receivers were `moved` for all shots, a line of `lower` does not count."""
+        names = ("source", "source_off_line", "source_elevation", "delay")
+        given = {name: getattr(self, name) for name in names}
+        values = {name: getattr(lower, name) if value is None else value for name, value in given.items()}
+        line = self.line if moved or self.line is not None else lower.line
+        return ShotGeometry(**values, line=line)
+
 
 @noun
 class Geometry:
@@ -108,6 +116,21 @@ class Geometry:
                 all_finite(getattr(self, name), name)
         if self.receivers is not None and self.elevations is not None:
             same_length([("receivers", self.receivers), ("elevations", self.elevations)])
+
+    def over(self, lower: Geometry) -> Geometry:
+        """Return both geometries in one: what this one gives wins, field by field, over `lower`."""
+        moved = self.line is not None or self.receivers is not None
+        shots = {
+            file: self.shots.get(file, ShotGeometry()).over(lower.shots.get(file, ShotGeometry()), moved)
+            for file in {**lower.shots, **self.shots}
+        }
+        return Geometry(
+            shots=shots,
+            line=self.line if moved else lower.line,
+            receivers=self.receivers if moved else lower.receivers,
+            elevations=lower.elevations if self.elevations is None else self.elevations,
+            origin=f"{self.origin} over {lower.origin}",
+        )
 
     def positions(self, file: str, count: int) -> FloatArray | None:
         """Return the positions of the `count` channels of a file [m], None where only the header knows.

@@ -25,6 +25,9 @@ from .splitting import split_at_source
 from .stacking import merge_blows, stack_blows
 from .trace_faults import examine_traces
 
+STACKED = "stacked with"
+"""How the flag of a stacked blow begins: it tells what was done, it is no doubt."""
+
 
 def prepare_records(
     paths: Sequence[str | Path],
@@ -144,9 +147,9 @@ def _tell(
     for shot, shift, correlation, wanted in zip(group, shifts, correlations, used, strict=True):
         others = ", ".join(name for name in names if name != shot.files[0])
         if wanted:
-            shot.flags.append(
-                f"stacked with {others}: moved {1e3 * -shift:+.2f} ms, correlation {correlation:.2f}"
-            )
+            moved = f"moved {1e3 * -shift:+.2f} ms, correlation {correlation:.2f}"
+            leads = shift == 0.0 and correlation > 1.0 - 1e-9
+            shot.flags.append(f"{STACKED} {others}: {'the others were moved to it' if leads else moved}")
         else:
             shot.reason = (
                 f"{shot.files[0]}: unlike the other blows at its source position ({others}): "

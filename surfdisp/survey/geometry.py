@@ -2,6 +2,10 @@
 
 from __future__ import annotations
 
+from functools import reduce
+from pathlib import Path
+
+from ..core import InputError
 from ..records import Geometry, ReceiverLine, ShotGeometry, geometry_beside, read_geometry_csv
 from .settings import RecordSettings
 
@@ -9,15 +13,27 @@ from .settings import RecordSettings
 def geometry_of(records: RecordSettings) -> Geometry | None:
     """Return the positions that win over the headers, None where only the headers know.
 
+    The configuration wins over the tables it names, and those over tables beside the records.
+
     Raises
     ------
     InputError
-        If a table is broken.
+        If a table is broken, or a shot of the configuration is not among the records.
     """
+    sources = [
+        _written(records),
+        read_geometry_csv(*records.geometry_tables) if records.geometry_tables else None,
+        geometry_beside(records.files),
+    ]
+    given = [geometry for geometry in sources if geometry is not None]
+    return reduce(Geometry.over, given) if given else None
+
+
+def _written(records: RecordSettings) -> Geometry | None:
+    """The positions written into the configuration itself."""
     if records.receivers is None and not records.shots:
-        if records.geometry_tables:
-            return read_geometry_csv(*records.geometry_tables)
-        return geometry_beside(records.files)
+        return None
+    _check_names(records)
     line, positions, elevations = None, None, None
     if records.receivers is not None:
         given = records.receivers
@@ -40,3 +56,13 @@ def geometry_of(records: RecordSettings) -> Geometry | None:
         elevations=elevations,  # type: ignore[arg-type]
         origin="the configuration",
     )
+
+
+def _check_names(records: RecordSettings) -> None:
+    names = {Path(file).name for file in records.files}
+    for shot in records.shots:
+        if shot.file not in names:
+            raise InputError(
+                f"records.shots: file {shot.file!r} is not among the records; expected the base name of one "
+                f"of the {len(names)} files, such as {min(names)!r}"
+            )

@@ -23,7 +23,7 @@ from ..core import (
 )
 from ..dispersion import CurveFromGathers, curve_from_gathers
 from ..inversion import invert
-from ..records import condition, prepare_records
+from ..records import STACKED, condition, prepare_records
 from ..site import site_result
 from .axes import image_axes
 from .borehole import read_borehole_log
@@ -31,14 +31,23 @@ from .geometry import geometry_of
 from .load import settings_text
 from .settings import ConditioningSettings, ImageSettings, InversionSettings, Settings, SiteSettings
 
+Read = tuple[tuple[Record, ...], tuple[Gather, ...]]
+
 FILES_NAMED = 3
 """How many of the files that share a doubt are named in its warning; the table of records has them all."""
 
 NOTHING_PICKED = "Nothing could be picked: no curve, so no profile, no Vs30 and no site class."
 
 
-def run_survey(settings: Settings, *, progress: Progress = SILENT) -> SurveyResult:
+def run_survey(settings: Settings, *, read: Read | None = None, progress: Progress = SILENT) -> SurveyResult:
     """Do the whole job, from field files to site quantities.
+
+    Parameters
+    ----------
+    settings : Settings
+    read : tuple, optional
+        What `read_usable` returned for these settings, where that is known already.
+    progress : Progress
 
     Raises
     ------
@@ -46,7 +55,7 @@ def run_survey(settings: Settings, *, progress: Progress = SILENT) -> SurveyResu
         If no record can be used; the message names the first file and its reason.
     """
     logs = tuple(read_borehole_log(Path(log)) for log in settings.site.borehole_logs)
-    seen = look_at(settings, progress=progress)
+    seen = look_at(settings, read=read, progress=progress)
     seen = replace(seen, logs=logs)
     if seen.curve is None:
         return replace(seen, warnings=(*seen.warnings, NOTHING_PICKED))
@@ -57,17 +66,9 @@ def run_survey(settings: Settings, *, progress: Progress = SILENT) -> SurveyResu
     return replace(seen, inversion=inversion, site=state_site(inversion, settings.site))
 
 
-def look_at(settings: Settings, *, progress: Progress = SILENT) -> SurveyResult:
-    """Do the first half of the job, from field files to the curve.
-
-    Raises
-    ------
-    InputError
-        If no record can be used; the message names the first file and its reason.
-    """
-    records, gathers = read_records(settings, progress=progress)
-    if not gathers:
-        raise InputError(_nothing_usable(records))
+def look_at(settings: Settings, *, read: Read | None = None, progress: Progress = SILENT) -> SurveyResult:
+    """Do the first half of the job, from field files to the curve; see `run_survey`."""
+    records, gathers = read_usable(settings, progress=progress) if read is None else read
     gathers = condition_gathers(gathers, settings.conditioning)
     seen = see(gathers, settings.image, progress=progress)
     return SurveyResult(
@@ -84,9 +85,21 @@ def look_at(settings: Settings, *, progress: Progress = SILENT) -> SurveyResult:
     )
 
 
-def read_records(
-    settings: Settings, *, progress: Progress = SILENT
-) -> tuple[tuple[Record, ...], tuple[Gather, ...]]:
+def read_usable(settings: Settings, *, progress: Progress = SILENT) -> Read:
+    """Read, check and sort the field files of a survey, demanding that one of them can be used.
+
+    Raises
+    ------
+    InputError
+        If no record can be used; the message names the first file and its reason.
+    """
+    records, gathers = read_records(settings, progress=progress)
+    if not gathers:
+        raise InputError(_nothing_usable(records))
+    return records, gathers
+
+
+def read_records(settings: Settings, *, progress: Progress = SILENT) -> Read:
     """Read, check and sort the field files of a survey."""
     return prepare_records(
         settings.records.files,
@@ -155,6 +168,8 @@ def _record_warnings(records: Sequence[Record]) -> list[str]:
     sharing: dict[str, list[str]] = {}
     for record in records:
         for flag in record.flags:
+            if flag.startswith(STACKED):
+                continue
             files = sharing.setdefault(flag.removeprefix(f"{record.file}: "), [])
             files.append(record.file)
     return [*refused, *(f"{_files(files)}: {flag}" for flag, files in sharing.items())]

@@ -5,7 +5,7 @@ from __future__ import annotations
 import tomllib
 from collections.abc import Sequence
 from pathlib import Path
-from typing import Any
+from typing import Any, get_args
 
 import tomli_w
 from pydantic import ValidationError
@@ -102,11 +102,26 @@ def _matches(folder: Path, pattern: str) -> list[Path]:
     return found
 
 
+def _known(place: tuple[int | str, ...]) -> list[str]:
+    """Names that may stand at a place of the configuration, given as sections and indices."""
+    section: Any = Settings
+    for part in place:
+        if isinstance(part, str):
+            section = _section(section.model_fields[part].annotation)
+    return list(section.model_fields)
+
+
+def _section(annotation: Any) -> Any:
+    """The section inside an annotation such as tuple[Section, ...] or Section | None."""
+    inner = [_section(part) for part in get_args(annotation) if part is not type(None) and part is not ...]
+    return inner[0] if inner else annotation
+
+
 def _first_complaint(error: ValidationError) -> str:
     first = error.errors(include_url=False)[0]
     field = ".".join(str(part) for part in first["loc"]) or "configuration"
     if first["type"] == "extra_forbidden":
-        return f"{field}: unknown name; see the settings listed in README.md"
+        return f"{field}: unknown name; expected one of {', '.join(_known(first['loc'][:-1]))}"
     if first["type"] == "missing":
         return f"{field}: missing; it is required"
     return f"{field}: {first['msg']}; got {first['input']!r:.60}"

@@ -5,8 +5,17 @@ import sys
 
 import pytest
 
+import surfdisp
+
 HEAVY = ("numba", "scipy", "obspy", "matplotlib", "h5py", "bokeh", "dask")
 VERBS = ("run", "look", "records")
+
+
+def test_version_is_printed_alone():
+    done = subprocess.run(
+        [sys.executable, "-m", "surfdisp.cli", "--version"], capture_output=True, text=True, check=True
+    )
+    assert done.stdout == f"{surfdisp.__version__}\n"
 
 
 @pytest.mark.parametrize("words", [[], *([verb] for verb in VERBS)])

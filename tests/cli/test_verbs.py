@@ -52,4 +52,5 @@ def test_look_draws_a_picture_and_names_the_band_picked(record, tmp_path, monkey
     assert picture.read_bytes().startswith(PNG)
     printed = capsys.readouterr().out
     assert "shot.sg2: picked" in printed
+    assert "shot.sg2: array 46 m long, its centre 31 m from the source" in printed
     assert str(picture) in printed

@@ -46,6 +46,20 @@ def test_a_table_beside_the_records_wins_over_the_header_and_loses_to_the_config
     assert read_records(given)[1][0].source == -7.5
 
 
+def test_what_each_table_says_wins_field_by_field_over_the_one_below(tmp_path):
+    (tmp_path / "shots.csv").write_text("file,source_m,source_elevation_m\na.sg2,-6.5,2.0\n")
+    named = tmp_path / "notes.csv"
+    named.write_text("file,source_off_line_m\na.sg2,1.5\n")
+    settings = survey(tmp_path, geometry_tables=(str(named),), shots=[{"file": "a.sg2", "source_m": -7.5}])
+    gather = read_records(settings)[1][0]
+    assert (gather.source, gather.source_off_line, gather.source_elevation) == (-7.5, 1.5, 2.0)
+
+
+def test_a_shot_of_the_configuration_that_is_no_record_is_refused_by_name(tmp_path):
+    with pytest.raises(InputError, match=r"records\.shots: file 'nosuch\.sg2' is not among the records"):
+        read_records(survey(tmp_path, shots=[{"file": "nosuch.sg2", "source_m": 1.0}]))
+
+
 def test_without_tables_only_the_headers_know(tmp_path):
     assert geometry_of(survey(tmp_path).records) is None
 

@@ -41,8 +41,18 @@ def test_the_settings_text_is_toml_that_states_the_defaults(tmp_path):
     ("text", "words"),
     [
         ("[records\n", "not valid TOML"),
-        ('[records]\nfiles = ["a.dat"]\n[wave]\nx = 1\n', "wave: unknown name"),
-        ('[records]\nfiles = ["a.dat"]\nspeling = 1\n', "records.speling: unknown name"),
+        (
+            '[records]\nfiles = ["a.dat"]\n[wave]\nx = 1\n',
+            "wave: unknown name; expected one of title, records",
+        ),
+        (
+            '[records]\nfiles = ["a.dat"]\nspeling = 1\n',
+            "records.speling: unknown name; expected one of files",
+        ),
+        (
+            '[records]\nfiles = ["a.dat"]\n[[records.shots]]\nfile = "a.dat"\nsource = 1\n',
+            "unknown name; expected one of file, source_m",
+        ),
         ("[records]\nfiles = []\n", "records.files"),
         ('title = "x"\n', "records: missing"),
         ('[records]\nfiles = ["*.sg2"]\n', "no file matches"),
