@@ -70,7 +70,7 @@ class ShotGeometry:
             set_field(self, name, None if value is None else finite(value, name))
 
     def over(self, lower: ShotGeometry, moved: bool) -> ShotGeometry:
-        """Return both in one; where receivers were `moved` for all shots, a line of `lower` does not count."""
+        """Return both in one; a line of `lower` does not count where receivers were `moved` for all shots."""
         names = ("source", "source_off_line", "source_elevation", "delay")
         given = {name: getattr(self, name) for name in names}
         values = {name: getattr(lower, name) if value is None else value for name, value in given.items()}

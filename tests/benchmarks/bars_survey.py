@@ -106,7 +106,7 @@ def wrong_input(folder: Path) -> Iterator[Bar]:
     cases = make_wrong_inputs(folder)
     for name, words in cases.items():
         out = folder / f"out_{name}"
-        done, _ = surfdisp("run", *words, "--out", str(out))
+        done, _ = surfdisp("run", *words, "--out", str(out), SURFDISP_CACHE=str(folder / "empty"))
         lines = done.stderr.strip().splitlines()
         named = Path(words[0]).name in done.stderr
         if done.returncode != 2 or len(lines) != 1 or not named or done.stdout or out.exists():
