@@ -61,8 +61,10 @@ def gridded_steered_power(
     increase. Writes n_grid x n_traces steering phases, n_grid = 8 aperture f_max / c_min.
     """
     step = 2.0 * np.pi / (OVERSAMPLING * (offsets.max() - offsets.min()))
-    first = int(2.0 * np.pi * frequencies[0] / velocities[-1] / step) - 2
-    last = int(2.0 * np.pi * frequencies[-1] / velocities[0] / step) + 4
+    # Interpolation reaches from node - 2 to node + 3; one more on each side, for a position that is a whole
+    # number may be rounded to either side of it.
+    first = int(2.0 * np.pi * frequencies[0] / velocities[-1] / step) - 4
+    last = int(2.0 * np.pi * frequencies[-1] / velocities[0] / step) + 6
     cosines = np.empty((last - first, len(offsets)))
     sines = np.empty((last - first, len(offsets)))
     for m in range(last - first):
@@ -74,7 +76,7 @@ def gridded_steered_power(
     power = np.empty((len(frequencies), len(velocities)))
     for i in range(len(frequencies)):
         scale = 2.0 * np.pi * frequencies[i] / step  # grid position of velocity 1 m/s
-        for m in range(int(scale / velocities[-1]) - 2 - first, int(scale / velocities[0]) + 4 - first):
+        for m in range(int(scale / velocities[-1]) - 3 - first, int(scale / velocities[0]) + 5 - first):
             re, im = 0.0, 0.0
             for j in range(len(offsets)):
                 re += real[i, j] * cosines[m, j] - imag[i, j] * sines[m, j]

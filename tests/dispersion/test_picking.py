@@ -1,5 +1,7 @@
 """The picker: exact on known waves, honest about its error, and silent where there is nothing to pick."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 
@@ -213,3 +215,20 @@ def test_scaling_lengths_and_times_scales_the_picks(make_wave):
     np.testing.assert_array_equal(a.accepted, b.accepted)
     np.testing.assert_allclose(a.velocity, b.velocity, rtol=1e-6)
     np.testing.assert_allclose(a.sigma, b.sigma, rtol=1e-4)
+
+
+def test_along_a_guide_the_limits_of_the_image_itself_hold(make_wave):
+    image = dispersion_image(make_wave(300.0, LINE, -60.0))
+    guide = Guide(np.array([3.0, 60.0]), np.array([300.0, 300.0]))
+    picks = pick(image, guide=guide, longest_wavelength=1.0)
+    assert picks.wavelength[picks.accepted].max() <= 46.0
+    assert p.TOO_LONG in picks.reason
+
+
+def test_only_the_accepted_picks_of_another_image_guide(make_wave):
+    image = dispersion_image(make_wave(200.0, LINE, -20.0))
+    full = pick(image)
+    part = full.accepted & (full.frequency > 25.0)
+    guided = pick(image, guide=replace(full, accepted=part))
+    assert guided.frequency[guided.accepted].min() == full.frequency[part].min()
+    assert np.all(guided.reason[full.frequency < 25.0] == p.NO_RIDGE)

@@ -41,6 +41,18 @@ def test_grid_error_is_bounded_where_it_is_largest_at_the_ends_of_the_spread():
     np.testing.assert_allclose(np.sqrt(got), np.sqrt(plain_power(unit, offsets)), atol=1e-4)
 
 
+def test_scans_that_begin_and_end_on_grid_points_stay_within_the_grid():
+    # f / c x 8 x aperture is a whole number at both ends, which may be rounded down or up
+    offsets = np.arange(24.0) * 2.0 - 23.0
+    for f in np.arange(5.0, 120.0, 5.0):
+        frequencies, velocities = np.array([f]), np.array([5.0 * f / 2.0, 4.0 * f, 5.0 * f])
+        angle = np.random.default_rng(int(f)).uniform(0.0, 2.0 * np.pi, (1, 24))
+        arrays = (np.cos(angle), np.sin(angle), np.array([24.0]), offsets, frequencies, velocities)
+        np.testing.assert_allclose(
+            steering.gridded_steered_power(*arrays), steering.steered_power(*arrays), atol=1e-5
+        )
+
+
 def test_unit_phasors_keep_the_phase_and_leave_dead_traces_out():
     real, imag = np.array([[3.0, 0.0, -1e-200]]), np.array([[4.0, 0.0, 0.0]])
     live = steering.unit_phasors(real, imag)
