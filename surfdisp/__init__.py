@@ -20,10 +20,10 @@ _HOMES = {
     "core": ["DispersionCurve", "DispersionImage", "Ensemble", "Gather", "InputError", "InversionResult",
              "LayeredEarth", "Picks", "Sensitivity", "SiteResult", "SurfdispError"],
     "earth": ["mode_count", "phase_velocity", "sensitivity", "synthesize"],
-    "records": ["read_gather"],
-    "dispersion": ["dispersion_image", "pick"],
+    "records": ["condition", "prepare_records", "read_gather"],
+    "dispersion": ["combine_picks", "curve_from_gathers", "dispersion_image", "pick", "stack_images"],
     "inversion": ["invert"],
-    "site": ["average_velocity", "vs30"],
+    "site": ["average_velocity", "site_result", "vs30"],
 }  # fmt: skip
 _HOME_OF = {name: home for home, names in _HOMES.items() for name in names}
 
@@ -37,4 +37,4 @@ def __getattr__(name: str) -> Any:
 
 
 def __dir__() -> list[str]:
-    return sorted([*globals(), *_HOME_OF])
+    return list(__all__)
