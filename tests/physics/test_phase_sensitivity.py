@@ -96,6 +96,23 @@ def test_a_mode_trapped_at_depth_has_no_sensitivity_at_the_surface():
     assert rows.vs[0, 1] * 100.0 == pytest.approx(phase_velocity(earth, 60.0)[0], rel=0.2)
 
 
+@pytest.mark.parametrize("mode", [0, 1])
+def test_a_mode_trapped_between_equal_layers_feels_both_alike_and_dies_out_from_there(mode):
+    earth = LayeredEarth(
+        thickness=[20.0, 3.0, 20.0, np.inf],
+        vp=[1500.0, 1500.0, 1500.0, 1800.0],
+        vs=[500.0, 100.0, 500.0, 600.0],
+        density=[2000.0, 1800.0, 2000.0, 2100.0],
+    )
+    velocity, rows = phase_velocity_and_sensitivity(earth, 60.0, mode=mode)
+    for field in ("vs", "vp", "density"):
+        values = getattr(rows, field)[0]
+        assert values[0] == pytest.approx(values[2], rel=1e-9)
+    decay = np.exp(-2.0 * 2.0 * np.pi * 60.0 * np.sqrt(1.0 / velocity[0] ** 2 - 1.0 / 500.0**2) * 20.0)
+    assert 0.0 < rows.vs[0, 3] < 1e3 * decay < 1e-40
+    assert 0.0 < np.abs(rows.thickness[0, [0, 2]]).max() < 1e5 * decay
+
+
 def test_sensitivity_agrees_with_the_pair_and_says_what_is_missing():
     earth = LayeredEarth(**SITE)
     together = phase_velocity_and_sensitivity(earth, [5.0, 10.0])[1]
