@@ -10,6 +10,7 @@ from ..site.assess import VELOCITY_ONLY
 from ..site.wavelength_check import agrees
 from .tables import sorted_notes
 from .words import (
+    band_and_wavelengths,
     interval,
     metres,
     number,
@@ -17,6 +18,9 @@ from .words import (
     printable,
     probabilities,
     profile_at_legible_depths,
+    scanned,
+    span,
+    traces_used,
     whole,
     without_file,
 )
@@ -28,6 +32,8 @@ def summary_text(result: SurveyResult) -> str:
     """Return the whole outcome as text: records, curve, resolved depth, profile, Vs30, class, warnings."""
     lines = [f"{printable(result.title)} (surfdisp {printable(result.version)})", ""]
     lines += _records(result.records)
+    if result.images:
+        lines += ["", *_wrapped("", f"Scanned: {scanned(result.images)}")]
     lines += ["", *_curve(result.curve)]
     if result.site is None:
         lines += ["", "Profile: none", "Vs30: not stated", "Site class: not stated"]
@@ -57,7 +63,7 @@ def _records(records: tuple[Record, ...]) -> Iterator[str]:
 def _record_words(record: Record) -> str:
     if not record.used:
         return printable(without_file(record.reason or "no reason given", record.file))
-    words = [f"{record.traces} traces"] if record.traces is not None else []
+    words = [f"{traces_used(record)} traces"] if record.traces is not None else []
     words += [f"source at {metres(record.source)} m"] if record.source is not None else []
     words += ["1 flag"] if len(record.flags) == 1 else []
     words += [f"{len(record.flags)} flags"] if len(record.flags) > 1 else []
@@ -68,13 +74,10 @@ def _curve(curve: DispersionCurve | None) -> Iterator[str]:
     if curve is None or not len(curve.frequency):
         yield "Curve: none, nothing could be picked"
         return
+    band, wavelengths = band_and_wavelengths(curve)
+    yield f"Curve: {band}, {wavelengths}, {len(curve.frequency)} points"
     yield (
-        f"Curve: {number(curve.frequency[0])} to {number(curve.frequency[-1])} Hz, "
-        f"wavelengths {number(curve.wavelength.min())} to {number(curve.wavelength.max())} m, "
-        f"{len(curve.frequency)} points"
-    )
-    yield (
-        f"  {observable(curve)}, {number(curve.velocity.min())} to {number(curve.velocity.max())} m/s, "
+        f"  {observable(curve)}, {span(curve.velocity, 'm/s')}, "
         f"median sigma {number(100.0 * sorted(curve.sigma / curve.velocity)[len(curve.sigma) // 2], 2)} %"
     )
 

@@ -38,8 +38,7 @@ def picks_over_curve(
     for index, pick in enumerate(picks):
         style = _style(index, gathers[index] if gathers else None)
         label = _label(pick, gathers[index] if gathers else None) if index < NAMED_SHOTS else None
-        frequency, velocity = _accepted(pick)
-        above.scatter(frequency, velocity, label=label, **style)
+        above.scatter(pick.frequency[pick.accepted], pick.velocity[pick.accepted], label=label, **style)
         frequency, departure = _departures(pick, curve)
         below.scatter(frequency, departure.clip(-reach, reach), **style)
     above.set_ylabel(f"{curve.kind} velocity (m/s)")
@@ -72,17 +71,12 @@ def _style(index: int, gather: Gather | None) -> dict[str, Any]:
     return {"s": 7.0, "marker": mark, "facecolors": "none", "linewidths": 0.6, "edgecolors": colour}
 
 
-def _accepted(picks: Picks) -> tuple[FloatArray, FloatArray]:
-    accepted = picks.accepted & np.isfinite(picks.velocity)
-    return picks.frequency[accepted], picks.velocity[accepted]
-
-
 def _departures(picks: Picks, curve: DispersionCurve) -> tuple[FloatArray, FloatArray]:
     """Return how far each accepted pick within the curve's band lies from the curve [%]."""
-    frequency, velocity = _accepted(picks)
-    inside = (frequency >= curve.frequency[0]) & (frequency <= curve.frequency[-1])
-    expected = np.interp(frequency[inside], curve.frequency, curve.velocity)
-    return frequency[inside], 100.0 * (velocity[inside] / expected - 1.0)
+    frequency = picks.frequency
+    shown = picks.accepted & (frequency >= curve.frequency[0]) & (frequency <= curve.frequency[-1])
+    expected = np.interp(frequency[shown], curve.frequency, curve.velocity)
+    return frequency[shown], 100.0 * (picks.velocity[shown] / expected - 1.0)
 
 
 def _reach(picks: Sequence[Picks], curve: DispersionCurve) -> float:

@@ -7,7 +7,8 @@ from collections.abc import Iterator, Sequence
 
 from ..core import DispersionCurve, Picks, SurveyResult
 from .blocks import Block, bullets, figures_named, heading, paragraph
-from .words import mode_name, number, observable, percent, printable
+from .limits import limits_in_words
+from .words import band_and_wavelengths, mode_name, number, observable, percent, printable, scanned, span
 
 SHOT_LINES = 10
 IMAGES = 2
@@ -22,29 +23,32 @@ def picking(result: SurveyResult, figures: Sequence[str]) -> Iterator[Block]:
         "weak, in the near field, longer than the spread can measure, or an alias; the half-width of the "
         "ridge says what can be separated and is not an uncertainty."
     )
+    yield paragraph(
+        limits_in_words(),
+        f"Scanned were {scanned(result.images)}; chosen from spread and record unless set.",
+    )
     yield bullets([_shot_line(picks) for picks in result.picks], SHOT_LINES, "project.h5")
     yield from figures_named(
         "figure_shots",
         figures,
-        "Image of each shot with picks accepted and refused, and limits: wavelengths equal to the distance "
-        "of the array centre (near field), the length of the array, and two receiver spacings.",
+        "Image of each shot with picks accepted, accepted with a flag, and refused, and the limits applied.",
         width=88,
     )
     shown = "the picks of every shot, the combined curve" if result.curve is not None else "what was refused"
     yield from figures_named(
         "figure_image",
         figures,
-        f"Image of each spread, its shots stacked, with {shown}, and the limits of the array (the near field "
-        "begins at one wavelength to the array centre).",
+        f"Image of each spread, its shots stacked, with {shown}, and the limits applied; the near field is "
+        "judged shot by shot, so that picks of farther shots may lie above the lines of the nearest one.",
         width=80 if len(result.stacked_images) == 1 else 66,
         most=IMAGES,
     )
     yield from figures_named(
         "figure_curve",
         figures,
-        "Accepted picks of all shots over the combined curve (blue: source before the middle of the line, "
-        "brown: behind it), and their departure from it with the curve's standard deviation shaded; what "
-        "lies beyond the lower panel is drawn at its edge.",
+        "Accepted picks of all shots over the combined curve, in one colour where the source stands before "
+        "the middle of the line and in another where it stands behind it, and their departure from it with "
+        "the curve's standard deviation shaded; what lies beyond the lower panel is drawn at its edge.",
         width=82,
     )
 
@@ -63,12 +67,11 @@ def _shot_line(picks: Picks) -> str:
 def curve(result_curve: DispersionCurve) -> Iterator[Block]:
     """Yield the combined curve in words: band, wavelengths, uncertainty, and the mode it is taken for."""
     relative = result_curve.sigma / result_curve.velocity
-    frequency, velocity, wavelength = result_curve.frequency, result_curve.velocity, result_curve.wavelength
+    band, wavelengths = band_and_wavelengths(result_curve)
     yield heading("Dispersion curve")
     yield paragraph(
-        f"{observable(result_curve)}: {len(frequency)} points from {number(frequency[0])} to "
-        f"{number(frequency[-1])} Hz, {number(velocity.min())} to {number(velocity.max())} m/s, "
-        f"wavelengths from {number(wavelength.min())} to {number(wavelength.max())} m.",
+        f"{observable(result_curve)}: {len(result_curve.frequency)} points from {band}, "
+        f"{span(result_curve.velocity, 'm/s')}, {wavelengths}.",
         f"Standard deviations are {percent(float(relative.min()))} to {percent(float(relative.max()))} of "
         "the velocity: the error of the ridge's location joined with the scatter between shots, not "
         "divided by their number, because near field and lateral change do not average out.",

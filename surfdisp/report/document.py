@@ -6,24 +6,25 @@ from collections.abc import Iterator, Sequence
 from typing import Any
 
 from ..core import SurveyResult
+from ..site.notes import CAUTION, CLASS_CAUTION
 from . import curve_sections, earth_sections, field_sections
 from .blocks import Block, bullets, heading, keys, new_page, paragraph, shown, signature
 from .sources import sources
 from .tables import sorted_notes
-from .words import number, printable, shortened
+from .words import band_and_wavelengths, number, printable, shortened
 
 WARNING_LINES = 10
 
 CAUTIONS = (
-    "The result depends on the site engineer's judgement, who knows the ground from other sources. Local "
-    "codes and licensed practice prevail over this report.",
-    "Site classes follow the velocity criterion only: soft-clay and special-study classes (plasticity, water "
-    "content, strength, liquefaction) were not checked.",
+    CAUTION,
+    CLASS_CAUTION,
     "Surface waves average the ground under the whole line of receivers; where layers dip or change along "
     "the line, the profile is a mean, not a borehole.",
     "Thin layers, and layers softer than the one above them, are resolved worse with depth; other earths "
     "than those shown can fit the same curve.",
     "Below the resolved depth the profile is an extension, not a measurement.",
+    "The inversion is elastic: attenuation disperses velocities by about ln(f/f0)/(pi Q) (Aki & Richards), "
+    "about 1 % per factor of 4 in frequency at Q of 35, which is not corrected.",
 )
 
 
@@ -69,8 +70,8 @@ def _ground_keys(result: SurveyResult) -> Iterator[tuple[str, str, str]]:
         return
     extended = ", extended below the resolved depth" if site.vs30_note else ""
     yield "Vs30", f"{site.vs30.median:.0f} m/s", f"{site.vs30.low:.0f} to {site.vs30.high:.0f} m/s{extended}"
-    classes = [f"{name} {standard}" for standard, name in site.median_class.items()]
-    yield "Site class of the median", next(iter(site.median_class.values()), "–"), "; ".join(classes)
+    first, *others = [f"{standard}: {name}" for standard, name in site.median_class.items()] or ["–"]
+    yield "Site class of the median", first, "; ".join(others)
     yield "Resolved depth", f"{number(site.resolved_depth)} m", "below it: extension, not data"
 
 
@@ -78,12 +79,7 @@ def _curve_key(result: SurveyResult) -> tuple[str, str, str]:
     curve = result.curve
     if curve is None or not len(curve.frequency):
         return "Curve", "none", "nothing could be picked"
-    band = f"{number(curve.frequency[0])} to {number(curve.frequency[-1])} Hz"
-    return (
-        "Curve",
-        band,
-        f"wavelengths {number(curve.wavelength.min())} to {number(curve.wavelength.max())} m",
-    )
+    return ("Curve", *band_and_wavelengths(curve))
 
 
 def _purpose(result: SurveyResult) -> Iterator[Block]:
@@ -92,15 +88,17 @@ def _purpose(result: SurveyResult) -> Iterator[Block]:
     yield paragraph(
         "The survey was made to find how shear velocity changes with depth beneath a line of geophones, "
         "and from it the time-averaged velocity and the site class.",
-        f"Of {len(result.records)} field files {used} were used.",
+        f"Field files used: {used} of {len(result.records)}.",
         _outcome(result),
     )
 
 
 def _outcome(result: SurveyResult) -> str:
     if result.inversion is None:
-        reasons = "; ".join(warning.rstrip(".") for warning in result.warnings[:3])
-        return f"No profile is given: {reasons or 'nothing could be picked'}."
+        reason = (
+            result.warnings[-1] if result.warnings else "Nothing could be picked"
+        )  # the last one ended it
+        return f"No profile is given. {reason.rstrip('.')}."
     return (
         "The profile explains the measured curve with a mean squared misfit of "
         f"{number(result.inversion.chi_square)} in units of its variance."

@@ -8,7 +8,7 @@ import numpy as np
 
 from ..core import Gather, Record, SurveyResult
 from .blocks import NUMBER, TEXT, WIDE, Block, bullets, figures_named, heading, paragraph, settings, table
-from .words import metres, number, printable, shortened, without_file
+from .words import metres, number, printable, shortened, traces_used, without_file
 
 RECORD_ROWS = 20
 FLAG_LINES = 10
@@ -90,7 +90,7 @@ def _record_row(record: Record) -> list[str]:
     return [
         shortened(printable(record.file), 24),
         "yes" if record.used else "no",
-        number(record.traces),
+        traces_used(record),
         number(_milli(record.interval)),
         metres(record.source),
         number(_milli(record.delay)),
@@ -110,7 +110,9 @@ def processing(result: SurveyResult, figures: Sequence[str]) -> Iterator[Block]:
     yield paragraph(
         "Records of one source position were aligned and stacked, dead and noisy traces set aside, and each "
         "gather turned into an image of power over frequency and phase velocity.",
-        "All settings, defaults included:" if result.settings else "",
+        "Settings; what is not listed was chosen by the program and is stated in the text:"
+        if result.settings
+        else "",
         leads_on=True,
     )
     if result.settings:

@@ -26,7 +26,7 @@ def curve_fit(inversion: InversionResult, ensemble_curves: FloatArray | None = N
     _velocities(above, inversion, ensemble_curves)
     _residuals(below, inversion)
     above.set_ylabel(f"{inversion.curve.kind} velocity (m/s)")
-    below.set_ylabel("misfit (sigma)")
+    below.set_ylabel("measured minus\npredicted (sigma)")
     below.set_xlabel("frequency (Hz)")
     figure.align_ylabels()
     legend_below(figure, [above], columns=3)
@@ -45,7 +45,7 @@ def _velocities(axes: Axes, inversion: InversionResult, ensemble_curves: FloatAr
         elinewidth=0.8, label="measured ± sigma",
     )  # fmt: skip
     axes.plot(curve.frequency, inversion.predicted, color=BEST, label="best earth", zorder=3)
-    axes.set_title(f"mean squared misfit in units of sigma: {number(inversion.chi_square)}")
+    axes.set_title(f"mean squared misfit in units of the variance: {number(inversion.chi_square)}")
     frequency_scale(axes)
     finish(axes)
 

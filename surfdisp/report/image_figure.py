@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from typing import NamedTuple
+from typing import Any, NamedTuple
 
 import numpy as np
 from matplotlib.axes import Axes
@@ -15,6 +15,7 @@ from numpy.typing import NDArray
 from ..core import DispersionCurve, DispersionImage, Picks
 from ..core.checks import FloatArray
 from .axes import log_scales
+from .limits import wavelength_limits
 from .palette import ACCEPTED, BEST, INK, REFUSED, TIDE, finish, sheet, styled
 from .panels import grid, label_outer, legend_below
 from .words import printable, shortened
@@ -25,6 +26,8 @@ POWER = "power (1: traces agree)"
 ALIAS = "alias of the ridge"
 PIXELS = 400
 """Rows and columns of an image as drawn."""
+LINE_STYLES: Any = ((0, (6, 2)), "solid", (0, (6, 2, 1, 2)), (0, (1.5, 1.5)))
+"""Of the limits, in their order."""
 
 
 @styled
@@ -36,7 +39,7 @@ def shot_images(images: Sequence[DispersionImage], picks: Sequence[Picks]) -> Fi
         _power(axes, image, view)
         _limits(axes, image)
         _picks(axes, pick, size=2.5)
-        _alias(axes, image, *accepted_of(pick))
+        _alias(axes, image, pick.frequency[pick.accepted], pick.velocity[pick.accepted])
         _frame(axes, view)
         axes.set_title(shortened(printable(image.name), 30))
     label_outer(panels, FREQUENCY, VELOCITY)
@@ -58,7 +61,8 @@ def image_with_picks(
     for pick in picks:
         _picks(axes, pick, size=4.0 if len(picks) == 1 else 1.5, band=len(picks) == 1)
     if curve is None and len(picks) == 1:
-        _alias(axes, image, *accepted_of(picks[0]))
+        accepted = picks[0].accepted
+        _alias(axes, image, picks[0].frequency[accepted], picks[0].velocity[accepted])
     if curve is not None and len(curve.frequency):
         _alias(axes, image, curve.frequency, curve.velocity)
         axes.errorbar(
@@ -67,13 +71,21 @@ def image_with_picks(
             zorder=4,
         )  # fmt: skip
     _frame(axes, view)
-    stack = f"{image.shots} shots stacked: " if image.shots > 1 else ""
-    axes.set_title(f"{stack}{shortened(printable(image.name), 60)}")
+    axes.set_title(_title(image))
     axes.set_xlabel(FREQUENCY)
     axes.set_ylabel(VELOCITY)
     _power_scale(figure, [axes])
     legend_below(figure, [axes], columns=3)
     return figure
+
+
+def _title(image: DispersionImage) -> str:
+    """Return the name of a single shot's image; of a stack the number of shots, and of files behind them."""
+    if image.shots == 1:
+        return shortened(printable(image.name), 60)
+    names = image.name.replace(" + ", ", ").split(", ")  # as blows and images are joined
+    files = len({name for name in names if name not in ("", "low side", "high side")})
+    return f"{image.shots} shots stacked" + (f" ({files} files)" if files > 1 else "")
 
 
 class _View(NamedTuple):
@@ -88,9 +100,8 @@ class _View(NamedTuple):
 def _view(image: DispersionImage, picks: Sequence[Picks]) -> _View:
     """Return the range around the accepted picks where their aliases and limits show, or the whole image."""
     frequencies, velocities = image.frequencies, image.velocities
-    accepted = [accepted_of(pick) for pick in picks]
-    frequency = np.concatenate([np.empty(0), *(pair[0] for pair in accepted)])
-    velocity = np.concatenate([np.empty(0), *(pair[1] for pair in accepted)])
+    frequency = np.concatenate([np.empty(0), *(pick.frequency[pick.accepted] for pick in picks)])
+    velocity = np.concatenate([np.empty(0), *(pick.velocity[pick.accepted] for pick in picks)])
     return _View(
         max(frequencies[0], 0.5 * frequency.min()) if len(frequency) else frequencies[0],
         frequencies[-1],
@@ -120,21 +131,9 @@ def _nearest(values: FloatArray, wanted: FloatArray) -> NDArray[np.intp]:
 
 def _limits(axes: Axes, image: DispersionImage) -> None:
     """Draw the wavelengths that bound what the array can tell: lines through the origin."""
-    lines = (
-        (float(np.mean(image.offsets)), (0, (6, 2)), "one wavelength to array centre"),
-        (image.aperture, (0, (6, 2, 1, 2)), "one wavelength along array"),
-        (2.0 * image.spacing, (0, (1.5, 1.5)), "wavelength of two spacings"),
-    )
-    for wavelength, style, label in lines:
-        if np.isfinite(wavelength) and wavelength > 0.0:
-            velocity = wavelength * image.frequencies
-            axes.plot(image.frequencies, velocity, color=INK, linewidth=0.8, linestyle=style, label=label)
-
-
-def accepted_of(picks: Picks) -> tuple[FloatArray, FloatArray]:
-    """Return frequencies [Hz] and velocities [m/s] of the accepted picks."""
-    accepted = picks.accepted & np.isfinite(picks.velocity)
-    return picks.frequency[accepted], picks.velocity[accepted]
+    for limit, style in zip(wavelength_limits(image), LINE_STYLES, strict=False):
+        velocity = limit.wavelength * image.frequencies
+        axes.plot(image.frequencies, velocity, color=INK, linewidth=0.8, linestyle=style, label=limit.label)
 
 
 def _alias(axes: Axes, image: DispersionImage, ridge_frequency: FloatArray, ridge: FloatArray) -> None:
@@ -153,25 +152,31 @@ def _alias(axes: Axes, image: DispersionImage, ridge_frequency: FloatArray, ridg
 
 
 def _picks(axes: Axes, picks: Picks, *, size: float, band: bool = True) -> None:
-    accepted = picks.accepted & np.isfinite(picks.velocity)
+    flagged = picks.accepted & (picks.reason != "")
+    plain = picks.accepted & ~flagged
     refused = ~picks.accepted & np.isfinite(picks.velocity)
-    if band and accepted.any():
-        _half_width(axes, picks, accepted)
+    if band and picks.accepted.any():
+        _half_width(axes, picks)
     if refused.any():
         axes.scatter(
             picks.frequency[refused], picks.velocity[refused], s=2.0 * size, marker="D", facecolors="none",
             edgecolors=REFUSED, linewidths=0.5, label="ridge, refused", zorder=3,
         )  # fmt: skip
-    if accepted.any():
+    if plain.any():
         axes.scatter(
-            picks.frequency[accepted], picks.velocity[accepted], s=size, marker="o", color=ACCEPTED,
+            picks.frequency[plain], picks.velocity[plain], s=size, marker="o", color=ACCEPTED,
             linewidths=0.0, label="pick, accepted", zorder=3,
+        )  # fmt: skip
+    if flagged.any():
+        axes.scatter(
+            picks.frequency[flagged], picks.velocity[flagged], s=2.0 * size, marker="^", facecolors="white",
+            edgecolors=ACCEPTED, linewidths=0.6, label="pick, accepted with a flag", zorder=3,
         )  # fmt: skip
 
 
-def _half_width(axes: Axes, picks: Picks, accepted: NDArray[np.bool_]) -> None:
+def _half_width(axes: Axes, picks: Picks) -> None:
     for side in (-1.0, 1.0):
-        edge = np.where(accepted, picks.velocity + side * picks.half_width, np.nan)
+        edge = np.where(picks.accepted, picks.velocity + side * picks.half_width, np.nan)
         axes.plot(picks.frequency, edge, color=ACCEPTED, linewidth=0.7, label="half-width of the ridge")
 
 

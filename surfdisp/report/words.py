@@ -3,10 +3,13 @@
 from __future__ import annotations
 
 import math
+import re
+from collections.abc import Sequence
 
 import numpy as np
 
-from ..core import DispersionCurve, Interval, Profile
+from ..core import DispersionCurve, DispersionImage, Interval, Profile, Record
+from ..core.checks import FloatArray
 
 MODE_NAMES = ("fundamental mode", "first higher mode", "second higher mode", "third higher mode")
 
@@ -75,6 +78,38 @@ def probabilities(classes: dict[str, float]) -> str:
 def observable(curve: DispersionCurve) -> str:
     """Return what the curve is, as in "Rayleigh phase velocity, fundamental mode"."""
     return f"{curve.wave.capitalize()} {curve.kind} velocity, {mode_name(curve.mode)}"
+
+
+def span(values: FloatArray, unit: str) -> str:
+    """Return the range of `values`, as in "8 to 55 Hz"."""
+    return f"{number(float(values.min()))} to {number(float(values.max()))} {unit}"
+
+
+def band_and_wavelengths(curve: DispersionCurve) -> tuple[str, str]:
+    """Return how far a curve reaches, as in "8 to 55 Hz" and "wavelengths 2.75 to 33.7 m"."""
+    return span(curve.frequency, "Hz"), f"wavelengths {span(curve.wavelength, 'm')}"
+
+
+def scanned(images: Sequence[DispersionImage]) -> str:
+    """Return the frequencies and velocities of the images; those of every spread where they differ."""
+    axes = [
+        f"{len(image.frequencies)} frequencies from {span(image.frequencies, 'Hz')} and "
+        f"{len(image.velocities)} velocities from {span(image.velocities, 'm/s')}"
+        for image in images
+    ]
+    return "; ".join(dict.fromkeys(axes))
+
+
+def traces_used(record: Record) -> str:
+    """Return how many traces a record has, as in "48", or "46 of 48" where some were set aside."""
+    if record.traces is None:
+        return "–"
+    told = "\n".join(record.flags)
+    channels = set(re.findall(r"\bchannel (\d+) set aside", told))
+    at_the_source = re.findall(r"\breceiver at \S+ m set aside", told)
+    sides = re.findall(r"\b(\d+) usable traces [^\n]* set aside", told)
+    lost = len(channels) + len(at_the_source) + sum(map(int, sides))
+    return f"{record.traces - lost} of {record.traces}" if record.used and lost else f"{record.traces}"
 
 
 def mode_name(mode: int | None) -> str:

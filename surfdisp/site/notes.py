@@ -15,6 +15,10 @@ CAUTION = (
     "The result depends on the site engineer's judgement; local codes and licensed practice prevail over "
     "this report."
 )
+CLASS_CAUTION = (
+    "Site classes follow the velocity criterion only: soft-clay and special-study classes not checked "
+    "(plasticity, water content, strength, blow counts, liquefaction)."
+)
 
 
 def extension_note(ensemble: Ensemble, resolved: float) -> str:
@@ -40,8 +44,7 @@ def notes(
         "Averages over depth are travel-time averages; the shear modulus is density x Vs^2 at small strain, "
         "with the density of the inversion.",
         f"Site classes use the {units} limits of the American standards.",
-        "Site classes follow the velocity criterion only: soft-clay and special-study classes not checked "
-        "(plasticity, water content, strength, blow counts, liquefaction).",
+        CLASS_CAUTION,
         _other_units(ensemble, units),
         _rock(ensemble, resolved),
         _agreement(vs30, check),

@@ -162,7 +162,7 @@ def records_of(gathers: list[Gather]) -> tuple[Record, ...]:
         for index, shot in enumerate(gathers)
     ]
     bad = Record(file="broken.dat", sha256="ee" * 32, reason="the file ends in trace 7 of 24")
-    flags = ("trace 5 is dead: set aside", "trace 9 has reversed polarity: turned")
+    flags = ("channel 5 set aside: dead: no signal", "trace 9 has reversed polarity: turned")
     return (dataclasses.replace(used[0], flags=flags), *used[1:], bad)
 
 

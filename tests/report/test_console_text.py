@@ -6,7 +6,14 @@ import pytest
 
 from surfdisp.core import Record
 from surfdisp.report import summary_text
-from surfdisp.report.words import metres, number, percent, printable, profile_at_legible_depths
+from surfdisp.report.words import (
+    metres,
+    number,
+    percent,
+    printable,
+    profile_at_legible_depths,
+    traces_used,
+)
 
 
 def test_the_text_tells_the_whole_outcome(survey):
@@ -16,6 +23,9 @@ def test_the_text_tells_the_whole_outcome(survey):
         "Terrace by the river",
         "Records: 6 used, 1 not used",
         "broken.dat  the file ends in trace 7 of 24",
+        "Scanned: 153 frequencies from 4 to 80 Hz and 181 velocities from 60 to 600 m/s",
+        "1001.dat    23 of 24 traces",
+        "1002.dat    24 traces",
         "Curve: 8 to 55 Hz, wavelengths 2.75 to 33.7 m, 28 points",
         "Rayleigh phase velocity, fundamental mode",
         "Resolved depth: 16.9 m",
@@ -92,3 +102,17 @@ def test_numbers_keep_three_digits_and_probabilities_never_round_to_certainty():
         "> 99 %",
         "100 %",
     ]
+
+
+def test_traces_set_aside_are_counted_once_each():
+    flags = (
+        "channel 4 set aside: dead: no signal",
+        "a.dat: channel 4 set aside: noise",
+        "channel 11 set aside: reversed polarity",
+        "receiver at 6 m set aside: it is at the source",
+        "5 usable traces on the low side of the source at 6 m set aside; expected at least 8",
+    )
+    assert traces_used(Record(file="a.dat", used=True, traces=24, flags=flags)) == "16 of 24"
+    assert traces_used(Record(file="a.dat", used=True, traces=24)) == "24"
+    assert traces_used(Record(file="a.dat", reason="no positions", traces=24, flags=flags)) == "24"
+    assert traces_used(Record(file="a.dat")) == "–"

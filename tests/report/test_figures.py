@@ -144,7 +144,10 @@ def test_accepted_and_refused_picks_have_marks_of_their_own(survey):
     refused = np.column_stack([picks.frequency, picks.velocity])[
         ~picks.accepted & np.isfinite(picks.velocity)
     ]
-    assert np.array_equal(scattered(axes, "pick, accepted"), accepted)
+    flagged = picks.reason[picks.accepted] != ""
+    assert flagged.any()
+    assert np.array_equal(scattered(axes, "pick, accepted"), accepted[~flagged])
+    assert np.array_equal(scattered(axes, "pick, accepted with a flag"), accepted[flagged])
     assert np.array_equal(scattered(axes, "ridge, refused"), refused)
     edges = [line.get_ydata() for line in axes.lines if line.get_label() == "half-width of the ridge"]
     assert np.allclose((edges[0] + edges[1])[picks.accepted] / 2, picks.velocity[picks.accepted])
@@ -158,9 +161,10 @@ def test_limits_are_the_wavelengths_they_claim(survey):
     image = survey.images[0]
     axes = image_with_picks(image, survey.picks[:1]).axes[0]
     expected = {
-        "one wavelength to array centre": 43.0,  # receivers 0 to 46 m seen from -20 m
-        "one wavelength along array": 46.0,
-        "wavelength of two spacings": 4.0,
+        "near field: flagged above": 43.0,  # receivers 0 to 46 m seen from -20 m
+        "near field: refused above": 86.0,
+        "1.5 spread lengths: refused above": 69.0,
+        "two spacings: flagged below": 4.0,
     }
     for label, wavelength in expected.items():
         ((frequency, velocity),) = [points[-1] for points in line(axes, label)]
@@ -226,7 +230,9 @@ def test_the_profile_draws_the_steps_of_median_and_best_earth(survey):
 
 def test_misfits_are_in_units_of_sigma(survey):
     inversion = survey.inversion
-    below = curve_fit(inversion).axes[1]
+    above, below = curve_fit(inversion).axes
+    assert above.get_title(loc="left") == "mean squared misfit in units of the variance: 0.93"
+    assert below.get_ylabel().split() == ["measured", "minus", "predicted", "(sigma)"]
     residual = (inversion.curve.velocity - inversion.predicted) / inversion.curve.sigma
     assert any(np.array_equal(points.get_ydata(), residual) for points in below.lines)
 

@@ -10,6 +10,7 @@ import pytest
 
 from surfdisp.core import StepError
 from surfdisp.report import pdf, write_figures, write_report
+from surfdisp.site.notes import CAUTION, CLASS_CAUTION
 
 from .conftest import survey_of, without_picks
 
@@ -39,12 +40,23 @@ def test_the_report_says_what_was_found_in_three_to_six_pages(tmp_path, survey, 
     for phrase in (
         "Terrace by the river",
         f"Vs30 is {vs30.median:.0f} m/s ({vs30.low:.0f} to {vs30.high:.0f})",
-        "Of 7 field files 6 were used",
+        "Field files used: 6 of 7.",
         "the file ends in trace 7 of 24",
         "1010101010",  # digest of the first file
         "1001.dat: trace 9 has reversed polarity",
         "24 vertical receivers from 0 to 46 m",
         "minimum_frequency_hz = 4.0",
+        "what is not listed was chosen by the program",
+        "153 frequencies from 4 to 80 Hz and 181 velocities from 60 to 600 m/s",
+        "below 0.5 wavelengths",
+        "beyond 1.5 spread lengths",
+        "8 bins per octave",
+        "more than 3 robust standard deviations",
+        "ASCE 7-22: D",
+        "23 of 24",
+        "ln(f/f0)/(pi Q)",
+        CAUTION,
+        CLASS_CAUTION,
         "28 points from 8 to 55 Hz",
         "signal-to-noise below 2 (50)",
         "fundamental mode",
@@ -130,8 +142,7 @@ def test_where_nothing_could_be_picked_the_report_says_why(tmp_path, shots):
     text = " ".join(" ".join(made).split())
     assert 3 <= len(made) <= 6
     for phrase in (
-        "No profile is given",
-        "Nothing could be picked: no ridge is continuous",
+        "No profile is given. Nothing could be picked: no ridge is continuous",
         "1001.dat",
         "not stated",
     ):
