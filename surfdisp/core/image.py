@@ -61,6 +61,7 @@ class DispersionImage:
         noise = np.full(count, np.nan) if self.signal_to_noise is None else self.signal_to_noise
         set_field(self, "signal_to_noise", float_array(noise, "signal_to_noise"))
         same_length([("frequencies", self.frequencies), ("signal_to_noise", self.signal_to_noise)])  # type: ignore[list-item]
+        all_finite(self.offsets, "offsets")
         if self.offsets.size == 0 or not np.all(np.diff(self.offsets) >= 0.0):
             raise InputError(f"offsets must hold a distance and must not decrease; got {self.offsets}")
         if self.spacing <= 0.0:

@@ -68,8 +68,8 @@ def images(draw):
     return DispersionImage(
         frequencies=draw(rising(rows)),
         velocities=draw(rising(columns)),
-        spacing=draw(ANY),
-        offsets=draw(array(2)),
+        spacing=draw(POSITIVE | st.just(np.nan)),
+        offsets=draw(rising(2)),
         power=draw(array((rows, columns), st.floats(0, 1))),
         signal_to_noise=draw(maybe(array(rows))),
         name=draw(TEXT),
@@ -79,12 +79,14 @@ def images(draw):
 @st.composite
 def picks(draw):
     count = draw(st.integers(0, 3))
+    velocity, sigma = draw(array(count)), draw(array(count))
+    there = np.isfinite(velocity) & np.isfinite(sigma)
     return Picks(
         frequency=draw(rising(count)),
-        velocity=draw(array(count)),
-        sigma=draw(array(count)),
+        velocity=velocity,
+        sigma=sigma,
         half_width=draw(array(count)),
-        accepted=draw(hnp.arrays(np.bool_, count)),
+        accepted=draw(hnp.arrays(np.bool_, count)) & there,
         reason=draw(texts(count)),
         mode=draw(maybe(st.integers(0, 9))),
         name=draw(TEXT),
@@ -147,7 +149,8 @@ RECORDS = st.builds(
 def profiles(draw):
     count = draw(st.integers(0, 3))
     return Profile(
-        depth=draw(rising(count)), **{name: draw(array(count)) for name in ("median", "low", "high")}
+        depth=[0.0, *draw(rising(count))][:count],
+        **{name: draw(array(count)) for name in ("median", "low", "high")},
     )
 
 
