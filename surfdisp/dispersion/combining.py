@@ -18,11 +18,13 @@ LEAST_COVERAGE = 0.4
 OUTLIER = 3.0
 """A shot is rejected from a bin beyond this many robust standard deviations from the median, of 3 or more."""
 LEAST_SPREAD = 0.01
-"""Relative standard deviation below which no bin is stated, nor a shot taken for an outlier."""
+"""Relative standard deviation below which no bin is stated."""
 LARGEST_SCATTER = 0.10
 """A bin whose shots scatter by more (relative standard deviation) is left out."""
 SINGLE_SHOT_SCATTER = 0.03
-"""Relative scatter assumed where one shot cannot show any: 2 to 5 % is common practice."""
+"""Relative scatter between shots expected before any is seen: 2 to 5 % is common practice."""
+EXPECTATION_WEIGHT = 1.0
+"""How many shots that expectation is worth against the scatter that the shots show."""
 
 
 class _ShotBin(NamedTuple):
@@ -46,10 +48,14 @@ def combine_picks(
     In each bin every shot counts once: the mean of its picks, weighted by their variance and moved along the
     local slope to the bin's centre. Its standard deviation is not divided by the root of their number, as
     neighbouring frequencies are not independent. Shots further than `outlier` robust standard deviations from
-    the median are rejected where there are three or more. The bin's velocity is the mean over the shots,
-    weighted by their variance: far shots count more where near ones are in their near field. Its variance is
-    the scatter between them (pooled with the two neighbouring bins; not divided by their number, as lateral
-    change and near field do not average out) plus the mean variance within. A bin needs half of all shots;
+    the median are rejected where there are three or more, never the nearer half. The bin's velocity is the
+    mean over the shots, weighted by their variance: far shots count more where near ones are in their near
+    field. Its variance is that of the scatter between them plus the arithmetic mean of their variances, and
+    is not divided by their number, as lateral change and near field do not average out. Few shots may agree
+    by chance, so the variance of the scatter is (w e**2 + nu s**2) / (w + nu): `s` the scatter shown, pooled
+    with the two neighbouring bins, whose shots are the same and add no freedom; `nu` one less than the shots;
+    `e` the expected 3 %, worth `w` = 1 shot (the scale of the inverse chi-square law of a variance with such
+    an expectation; Gelman et al., Bayesian Data Analysis, section 2.6). A bin needs half of all shots;
     picks flagged as near field count only where no shot is without.
 
     Parameters
@@ -59,9 +65,10 @@ def combine_picks(
     bins_per_octave : int
         Bins are centred at 2**(i / bins_per_octave) Hz.
     outlier : float
-        In robust standard deviations (1.4826 times the median absolute deviation, at least 1 %).
+        Positive, in robust standard deviations: 1.4826 times the median absolute deviation, which is too
+        small of few shots, and the expected 3 %, in quadrature.
     largest_scatter : float
-        Relative scatter beyond which a bin is left out.
+        Positive relative scatter beyond which a bin is left out.
 
     Returns
     -------
@@ -72,6 +79,8 @@ def combine_picks(
     if len(kinds) > 1:
         raise InputError(f"picks of one wave, kind and mode can be combined; got {sorted(map(str, kinds))}")
     per_octave = positive(bins_per_octave, "bins_per_octave")
+    outlier = positive(outlier, "outlier")
+    largest_scatter = positive(largest_scatter, "largest_scatter")
     notes: list[str] = []
     bins = _shots_in_bins(picks, per_octave)
     least = (len(picks) + 1) // 2
@@ -81,10 +90,7 @@ def combine_picks(
     bins = _without_scattered(bins, largest_scatter, per_octave, notes)
     if not bins:
         return None
-    if max(len(shots) for shots in bins.values()) == 1:
-        notes.append(
-            f"one shot only: scatter between shots is unknown, {100 * SINGLE_SHOT_SCATTER:.0f} % is assumed"
-        )
+    notes += _expectation_note(bins)
     wave, kind, mode = kinds.pop()
     velocity = np.exp([_mean(shots) for shots in bins.values()])
     return DispersionCurve(
@@ -160,8 +166,9 @@ def _without_outliers(
     for b, shots in bins.items():
         values = np.array([s.log_velocity for s in shots])
         distance = np.abs(values - np.median(values))
-        scale = max(1.4826 * float(np.median(distance)), LEAST_SPREAD)
-        limit = outlier * np.maximum(scale, [s.sigma for s in shots])
+        middle = float(np.median(distance))
+        scale = np.hypot(1.4826 * middle, SINGLE_SHOT_SCATTER)
+        limit = np.maximum(outlier * np.maximum(scale, [s.sigma for s in shots]), middle)
         out = (distance > limit) if len(shots) >= 3 else np.zeros(len(shots), dtype=bool)
         kept[b] = [s for s, bad in zip(shots, out, strict=True) if not bad]
         for s, bad in zip(shots, out, strict=True):
@@ -190,13 +197,41 @@ def _without_scattered(
 
 
 def _relative_sigma(bins: dict[int, list[_ShotBin]]) -> FloatArray:
-    sigma = []
-    for b, shots in bins.items():
-        scatter = _scatter([bins[n] for n in (b - 1, b, b + 1) if n in bins])
-        variance = np.square(SINGLE_SHOT_SCATTER if scatter is None else scatter)
-        variance += 1.0 / np.mean(_weights(shots))
-        sigma.append(max(float(np.sqrt(variance)), LEAST_SPREAD))
-    return np.array(sigma)
+    variance = np.array([_expected_variance(bins, b) + _within(shots) for b, shots in bins.items()])
+    return np.asarray(np.maximum(np.sqrt(variance), LEAST_SPREAD))
+
+
+def _expected_variance(bins: dict[int, list[_ShotBin]], b: int) -> float:
+    """Relative variance between shots: what they show, shrunk to what is expected."""
+    shown, freedom = _shown(bins, b)
+    expected = EXPECTATION_WEIGHT * SINGLE_SHOT_SCATTER**2
+    return (expected + freedom * shown**2) / (EXPECTATION_WEIGHT + freedom)
+
+
+def _shown(bins: dict[int, list[_ShotBin]], b: int) -> tuple[float, int]:
+    """Scatter pooled with the neighbouring bins, and its freedom: the same shots count once, not per bin."""
+    groups = [bins[n] for n in (b - 1, b, b + 1) if n in bins]
+    return _scatter(groups) or 0.0, max(len(group) for group in groups) - 1
+
+
+def _within(shots: list[_ShotBin]) -> float:
+    """Arithmetic mean of the shots' own relative variances."""
+    return float(np.mean(np.square([max(s.sigma, LEAST_SPREAD) for s in shots])))
+
+
+def _expectation_note(bins: dict[int, list[_ShotBin]]) -> list[str]:
+    """Say in how many points the expected scatter outweighs the scatter that the shots show."""
+    assumed = f"{100 * SINGLE_SHOT_SCATTER:.0f} %"
+    if max(len(shots) for shots in bins.values()) == 1:
+        return [f"one shot only: scatter between shots is unknown, {assumed} is assumed"]
+    shown = [_shown(bins, b) for b in bins]
+    count = sum(nu * s**2 < EXPECTATION_WEIGHT * SINGLE_SHOT_SCATTER**2 for s, nu in shown)
+    if not count:
+        return []
+    return [
+        f"in {count} of {len(bins)} points the uncertainty rests on an expected scatter of {assumed} more "
+        "than on the shots' own, which is smaller: lateral change and near field do not average out"
+    ]
 
 
 def _weights(shots: list[_ShotBin]) -> FloatArray:

@@ -58,6 +58,22 @@ def test_a_strongly_dispersive_ridge_is_no_alias():
 
 
 def test_near_field_error_falls_with_distance_and_ends():
+    # Yoon & Rix (2009) [M]: up to 10 to 15 % at one wavelength, 5 % at two, as two standard deviations
     error = limits.near_field_error(np.array([0.1, 0.5, 1.0, 2.0, 6.0, 50.0]))
-    assert np.all(np.diff(error) <= 0.0)
-    assert error[-1] == 0.0
+    assert error[0] == error[1]
+    assert np.all(np.diff(error[1:5]) < 0.0)
+    assert 0.05 <= error[2] <= 0.075
+    assert 0.02 <= error[3] <= 0.025
+    assert error[4] == error[5] == 0.0
+
+
+@pytest.mark.parametrize(
+    ("distance", "measured"), [(1.0, 6.0), (1.5, 5.7), (2.0, 2.4), (2.5, 1.6), (3.0, 0.9), (4.0, 0.7)]
+)
+def test_near_field_error_is_what_full_wavefields_gave(distance, measured):
+    assert 100.0 * limits.near_field_error(np.array([distance]))[0] == pytest.approx(measured, abs=0.05)
+
+
+def test_between_its_distances_the_near_field_error_is_linear():
+    middle = limits.near_field_error(np.array([1.75]))[0]
+    assert middle == pytest.approx(0.5 * (limits.NEAR_FIELD_ERROR[1.5] + limits.NEAR_FIELD_ERROR[2.0]))
