@@ -14,7 +14,7 @@ from . import limits
 from .axes import common_axes
 from .combining import BINS_PER_OCTAVE, combine_picks
 from .image import dispersion_image
-from .joining import join_curves
+from .joining import join_agreeing
 from .lateral import compare_directions, compare_halves
 from .picking import MINIMUM_STRENGTH, pick
 from .stacking import stack_images
@@ -23,12 +23,17 @@ WHOLE_SPREAD = 0.75
 """Part of the widest aperture that an image needs to be stacked: one of half the spread blurs the others."""
 
 
+FILES_NAMED = 3
+"""How many of its files stand beside the number of a spread in notes."""
+
+
 class CurveFromGathers(NamedTuple):
     """The products of `curve_from_gathers`.
 
     `images` and `picks` have one entry per gather in the same order, `stacked_images` one per spread in the
     order of their first gather; `curve` is None where nothing can be picked; `notes` are for the reader of
-    the report and include those of the curve.
+    the report and include those of the curve; `left_out` has the numbers (`Gather.spread`) of spreads with a
+    curve of their own that is no part of `curve`, being of different ground or without overlap.
     """
 
     images: tuple[DispersionImage, ...]
@@ -36,6 +41,7 @@ class CurveFromGathers(NamedTuple):
     picks: tuple[Picks, ...]
     curve: DispersionCurve | None
     notes: tuple[str, ...]
+    left_out: tuple[int, ...] = ()
 
 
 class _Spread(NamedTuple):
@@ -137,21 +143,33 @@ def _collect(gathers: Sequence[Gather], spreads: dict[int, _Spread]) -> CurveFro
     rank = {number: iter(range(len(gathers))) for number in spreads}
     places = [(g.spread, next(rank[g.spread])) for g in gathers]
     several = len(spreads) > 1
-    label = {number: f"spread {number + 1}" for number in spreads}
+    label = {number: _label(number, gathers) for number in spreads}
     notes = [
         f"{label[number]}: {note}" if several else note for number, s in spreads.items() for note in s.notes
     ]
-    curves = {label[number]: s.curve for number, s in spreads.items() if s.curve is not None}
-    curve = None
+    curves = {number: s.curve for number, s in spreads.items() if s.curve is not None}
+    curve: DispersionCurve | None = None
+    left_out: tuple[int, ...] = ()
     if curves:
         bare = [replace(c, notes=()) for c in curves.values()]
-        joined = join_curves(bare, tuple(curves))
-        notes = [*notes, *joined.notes]
-        curve = replace(joined, notes=tuple(notes))
+        joined = join_agreeing(bare, [label[number] for number in curves])
+        notes = [*notes, *joined.curve.notes]
+        curve = replace(joined.curve, notes=tuple(notes))
+        left_out = tuple(list(curves)[i] for i in joined.left_out)
     return CurveFromGathers(
         images=tuple(spreads[number].images[i] for number, i in places),
         stacked_images=tuple(s.stack for s in spreads.values()),
         picks=tuple(spreads[number].picks[i] for number, i in places),
         curve=curve,
         notes=tuple(notes),
+        left_out=left_out,
     )
+
+
+def _label(number: int, gathers: Sequence[Gather]) -> str:
+    """Number of a spread from one on, and its files."""
+    names = list(dict.fromkeys(g.name for g in gathers if g.spread == number and g.name))
+    if not names:
+        return f"spread {number + 1}"
+    more = f" and {len(names) - FILES_NAMED} more" if len(names) > FILES_NAMED else ""
+    return f"spread {number + 1} ({', '.join(names[:FILES_NAMED])}{more})"

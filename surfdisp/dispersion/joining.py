@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import replace
+from typing import NamedTuple
 
 import numpy as np
 
@@ -15,14 +16,21 @@ LARGEST_DISAGREEMENT = 0.05
 """Curves whose velocities differ by more in any band, beyond their uncertainty, are of different ground."""
 
 
+class Joined(NamedTuple):
+    """A joined curve, and the indices of the curves that stayed out of it."""
+
+    curve: DispersionCurve
+    left_out: tuple[int, ...]
+
+
 def join_curves(curves: Sequence[DispersionCurve], names: Sequence[str] = ()) -> DispersionCurve:
     """Join curves of fine and coarse spreads into one, after a check of their overlap.
 
     The curve that reaches the longest wavelength outside of the near field comes first; each other one is
     joined to it if both overlap and differ there by at most 5 %, or within their uncertainty. Where both have
     a point at a frequency the mean weighted by variance is taken, and half their difference is added to its
-    standard deviation. A curve that disagrees, or that nothing can be checked against, stays out, and `notes`
-    say so with numbers.
+    standard deviation in quadrature. A curve that disagrees, or that nothing can be checked against, stays
+    out, and `notes` say so with numbers.
 
     Parameters
     ----------
@@ -36,6 +44,11 @@ def join_curves(curves: Sequence[DispersionCurve], names: Sequence[str] = ()) ->
     InputError
         If there is no curve, or they are not of one wave, kind and mode.
     """
+    return join_agreeing(curves, names).curve
+
+
+def join_agreeing(curves: Sequence[DispersionCurve], names: Sequence[str] = ()) -> Joined:
+    """Do what `join_curves` does, and tell which curves stay out."""
     if not curves:
         raise InputError("joining needs at least one curve; got none")
     kinds = {(c.wave, c.kind, c.mode) for c in curves}
@@ -44,9 +57,12 @@ def join_curves(curves: Sequence[DispersionCurve], names: Sequence[str] = ()) ->
     labels = list(names) or [f"spread {i + 1}" for i in range(len(curves))]
     order = sorted(range(len(curves)), key=lambda i: -_reach(curves[i]))
     joined, notes = curves[order[0]], list(curves[order[0]].notes)
+    left_out: list[int] = []
     for i in order[1:]:
         differences = compare_curves(joined, curves[i])
         apart = [d for d in differences if d.significant and abs(d.difference) > LARGEST_DISAGREEMENT]
+        if apart or not differences:
+            left_out.append(i)
         if not differences:
             notes.append(f"{labels[i]} is left out: its curve does not overlap with {labels[order[0]]}")
         elif apart:
@@ -59,7 +75,7 @@ def join_curves(curves: Sequence[DispersionCurve], names: Sequence[str] = ()) ->
             notes += curves[i].notes
             if small := significant(differences):
                 notes.append(f"{labels[i]} differs from {labels[order[0]]} by {small}")
-    return replace(joined, notes=tuple(dict.fromkeys(notes)))
+    return Joined(replace(joined, notes=tuple(dict.fromkeys(notes))), tuple(sorted(left_out)))
 
 
 def _reach(curve: DispersionCurve) -> float:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from collections.abc import Sequence
 from dataclasses import replace
 from pathlib import Path
@@ -75,7 +76,7 @@ def look_at(settings: Settings, *, read: Read | None = None, progress: Progress 
         title=settings.title,
         settings=settings_text(settings),
         version=__version__,
-        records=records,
+        records=_without_spreads(records, gathers, seen.left_out),
         gathers=gathers,
         images=seen.images,
         picks=seen.picks,
@@ -160,6 +161,23 @@ def invert_curve(
 def state_site(inversion: InversionResult, settings: SiteSettings) -> SiteResult:
     """Return the site quantities."""
     return site_result(inversion, units=settings.class_bounds)
+
+
+def _without_spreads(
+    records: Sequence[Record], gathers: Sequence[Gather], left_out: Sequence[int]
+) -> tuple[Record, ...]:
+    """Mark the records of spreads that are no part of the curve as not used."""
+    outside = {file for g in gathers if g.spread in left_out for file in _files_of(g)}
+    outside -= {file for g in gathers if g.spread not in left_out for file in _files_of(g)}
+    why = "its spread is left out of the curve, see the warnings; run it alone for a profile of its own"
+    return tuple(
+        replace(r, used=False, reason=f"{r.file}: {why}") if r.file in outside else r for r in records
+    )
+
+
+def _files_of(gather: Gather) -> list[str]:
+    """Files behind a gather, by the name that the records room gives it."""
+    return re.split(r" \+ |, ", gather.name)
 
 
 def _record_warnings(records: Sequence[Record]) -> list[str]:

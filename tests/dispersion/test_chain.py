@@ -1,5 +1,7 @@
 """From gathers to the curve in one step."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 
@@ -95,6 +97,7 @@ def test_fine_and_coarse_spreads_of_one_ground_are_joined(make_wave):
     error = np.abs(joined.curve.velocity - ground(joined.curve.frequency))
     assert np.all(error < 2.5 * joined.curve.sigma)
     assert np.asarray(joined.curve.shots).max() == 6
+    assert joined.left_out == ()
 
 
 def test_spreads_on_different_ground_are_not_joined(make_wave):
@@ -103,7 +106,14 @@ def test_spreads_on_different_ground_are_not_joined(make_wave):
     )
     result = curve_from_gathers([*survey(make_wave), *other])
     assert np.asarray(result.curve.shots).max() == 4
-    assert any("different ground" in note for note in result.notes)
+    assert result.left_out == (1,)
+    (told,) = [note for note in result.notes if "different ground" in note]
+    assert told.startswith("spread 2 (0.dat, 1.dat) is left out, different ground")
+    assert "from spread 1 (0.dat, 1.dat, 2.dat and 1 more) by" in told
+    swapped = curve_from_gathers(
+        [replace(g, spread=1 - g.spread) for g in [*other, *survey(make_wave)]],
+    )
+    assert swapped.left_out == (0,)
 
 
 def test_sides_of_a_source_inside_the_spread_are_picked_along_the_ridge_of_the_whole(make_wave):

@@ -5,6 +5,7 @@ import pytest
 
 from surfdisp.core import DispersionCurve, InputError
 from surfdisp.dispersion import compare_curves, join_curves
+from surfdisp.dispersion.joining import join_agreeing
 from surfdisp.dispersion.picking import NEAR_FIELD
 
 
@@ -45,6 +46,14 @@ def test_curves_without_overlap_cannot_be_checked_and_stay_apart():
     joined = join_curves([curve(24, 32), curve(40, 52)])
     assert len(joined.frequency) == 8
     assert "does not overlap" in joined.notes[0]
+
+
+def test_which_curves_stay_out_is_told_by_their_place():
+    apart, fine, coarse, alone = curve(32, 52, 0.8), curve(32, 52), curve(24, 40), curve(64, 70)
+    joined = join_agreeing([apart, fine, coarse, alone])
+    assert joined.left_out == (0, 3)
+    np.testing.assert_array_equal(joined.curve.velocity, join_curves([fine, coarse]).velocity)
+    assert join_agreeing([fine, coarse]).left_out == ()
 
 
 def test_the_base_is_the_curve_with_the_longest_wavelength_outside_the_near_field():

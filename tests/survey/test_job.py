@@ -1,6 +1,7 @@
 """The steps of the job use the settings, and bad records are told by name."""
 
 import math
+from dataclasses import replace
 
 import numpy as np
 import pytest
@@ -125,3 +126,15 @@ def test_a_curve_too_short_to_invert_keeps_records_images_and_curve_and_says_so(
     assert result.inversion is None
     assert result.site is None
     assert any("No profile" in warning and "at least 4 points" in warning for warning in result.warnings)
+
+
+def test_records_of_a_spread_left_out_of_the_curve_are_not_called_used():
+    records = [Record(file=f"{name}.sg2", used=True) for name in ("a", "b", "c")]
+    gathers = [
+        replace(gather(), name="a.sg2 + b.sg2", spread=0),
+        replace(gather(), name="c.sg2, low side", spread=1),
+    ]
+    marked = job._without_spreads(records, gathers, (1,))
+    assert [record.used for record in marked] == [True, True, False]
+    assert "left out of the curve" in marked[2].reason
+    assert job._without_spreads(records, gathers, ()) == tuple(records)
