@@ -3,11 +3,9 @@
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
+from ..core.checks import FloatArray
 from ..core.gather import Gather
-
-FloatArray = NDArray[np.float64]
 
 ONSET_WINDOW = 0.004
 """Window of the running amplitude for first arrivals [s]."""

@@ -5,9 +5,8 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
+from ..core.checks import FloatArray
 from ..core.gather import Gather
-
-FloatArray = NDArray[np.float64]
 
 LOWEST, HIGHEST = 4.0, 60.0
 """Frequencies compared [Hz]: hammer surface waves, below the air wave and most machinery."""

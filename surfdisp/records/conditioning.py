@@ -5,13 +5,10 @@ from __future__ import annotations
 import dataclasses
 
 import numpy as np
-from numpy.typing import NDArray
 
-from ..core.checks import positive
+from ..core.checks import FloatArray, positive
 from ..core.errors import InputError
 from ..core.gather import Gather
-
-FloatArray = NDArray[np.float64]
 
 Limits = tuple[float | None, float | None]
 

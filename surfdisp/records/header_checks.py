@@ -8,13 +8,12 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from ..core.checks import FloatArray
 from ..core.gather import Gather
 from .arrivals import energy_times, first_arrivals
 from .located_shot import LocatedShot
 from .rank_correlation import rank_correlation
 from .selection import select_traces
-
-FloatArray = NDArray[np.float64]
 
 LEAST_TRACES = 6
 """Traces below which the data say too little about the source."""

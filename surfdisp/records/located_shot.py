@@ -7,13 +7,12 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from ..core.checks import FloatArray
 from ..core.errors import InputError
 from ..core.gather import Gather
 from .geometry import Geometry, ShotGeometry
 from .line import OnLine, project
 from .raw_record import RawRecord
-
-FloatArray = NDArray[np.float64]
 
 SAME_PLACE = 0.001
 """Receivers nearer to each other than this are at one place [m]."""

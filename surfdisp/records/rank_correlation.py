@@ -3,9 +3,8 @@
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import NDArray
 
-FloatArray = NDArray[np.float64]
+from ..core.checks import FloatArray
 
 
 def rank_correlation(a: FloatArray, b: FloatArray) -> float:

@@ -5,14 +5,12 @@ from __future__ import annotations
 import re
 
 import numpy as np
-from numpy.typing import NDArray
 
+from ..core.checks import FloatArray
 from ..core.units import FOOT
 from .field_file import FieldFile
 from .raw_record import RawRecord
 from .trace_table import common_traces
-
-FloatArray = NDArray[np.float64]
 
 NUMBER = re.compile(r"[-+]?(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d+)?")
 

@@ -6,14 +6,12 @@ from itertools import groupby
 from typing import Any
 
 import numpy as np
-from numpy.typing import NDArray
 
+from ..core.checks import FloatArray
 from ..core.units import FOOT
 from .field_file import FieldFile
 from .raw_record import RawRecord
 from .trace_table import common_traces
-
-FloatArray = NDArray[np.float64]
 
 FEET = 2
 """Measurement system of the binary file header (bytes 3255-3256): 1 metres, 2 feet."""

@@ -9,9 +9,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from ..core.checks import FloatArray
 from ..core.gather import Gather
-
-FloatArray = NDArray[np.float64]
 
 LARGEST_SHIFT = 0.02
 """Trigger error that is looked for [s]."""

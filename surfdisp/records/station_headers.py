@@ -6,14 +6,11 @@ import math
 from typing import Any
 
 import numpy as np
-from numpy.typing import NDArray
 
 from ..core.errors import FormatError
 from .field_file import FieldFile
 from .raw_record import RawRecord
 from .trace_table import common_traces
-
-FloatArray = NDArray[np.float64]
 
 EQUATORIAL_RADIUS = 6378137.0
 """Semi-major axis of the WGS 84 ellipsoid [m]."""

@@ -6,12 +6,10 @@ import dataclasses
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import NDArray
 
+from ..core.checks import FloatArray
 from ..core.gather import Gather
 from .coherence import HIGHEST, LOWEST, neighbour_coherence
-
-FloatArray = NDArray[np.float64]
 
 NEGLIGIBLE = 1e-3
 """Amplitude relative to the neighbours below which a trace is dead (60 dB down; gains differ by less)."""

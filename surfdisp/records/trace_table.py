@@ -7,11 +7,9 @@ from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
-from numpy.typing import NDArray
 
+from ..core.checks import FloatArray
 from ..core.errors import FormatError
-
-FloatArray = NDArray[np.float64]
 
 SHORTEST_INTERVAL, LONGEST_INTERVAL = 1e-6, 10.0
 """Sampling intervals that are believed [s]."""
